@@ -1,3 +1,8 @@
+import { goodValue, type Readings } from '../contract/reading.ts';
+import type { DriveRequest } from './drive-request.ts';
+import { bodyReasons, commonReasons, growReasons, kPa, pullReasons, requireGood } from './reasons.ts';
+import type { Refusal } from './verdict.ts';
+
 /** Setpoints for one tick. `null` leaves the rig's present setpoint as it is. SI. */
 export interface Setpoints {
   /** Tail speed at the spool, + lets out [m/s]. */
@@ -8,20 +13,28 @@ export interface Setpoints {
   readonly bodyPressure: number | null;
   /** [Pa gauge], one a muscle. */
   readonly musclePressures: readonly number[] | null;
-  /** Tip retractor engaged; null when the rig has no such output. */
+  /** Tip retractor engaged; null when it is to stay as it is or the rig has no such output. */
   readonly retractorGrip: boolean | null;
 }
+
+/** How long a permit may wait before its bytes are sent [s]: one tick at 20 Hz and some. */
+export const PERMIT_LIFE = 0.1;
 
 /**
  * The only thing that the rig link writes to a motor. Made by this file alone, for one tick: a look-alike object does
  * not compile, and a structured clone or a cast fails `isPermit` when it comes to the bytes.
  */
 export class PermittedDrive {
+  static #make: (setpoints: Setpoints, issuedAt: number) => PermittedDrive;
+  static {
+    PermittedDrive.#make = (setpoints, issuedAt) => new PermittedDrive(setpoints, issuedAt);
+  }
+
   readonly #setpoints: Setpoints;
   readonly #issuedAt: number;
 
   private constructor(setpoints: Setpoints, issuedAt: number) {
-    this.#setpoints = setpoints;
+    this.#setpoints = Object.freeze(setpoints);
     this.#issuedAt = issuedAt;
   }
 
@@ -41,18 +54,125 @@ export class PermittedDrive {
 
   /** Zero speeds and nothing else: always allowed, needs no verdict. */
   static holdStill(now: number, hasRetractor: boolean): PermittedDrive {
-    return new PermittedDrive(
-      {
-        spoolSpeed: 0,
-        retractorSpeed: hasRetractor ? 0 : null,
-        bodyPressure: null,
-        musclePressures: null,
-        retractorGrip: null,
-      },
-      now,
-    );
+    return PermittedDrive.#make({ ...NOTHING, retractorSpeed: hasRetractor ? 0 : null }, now);
+  }
+
+  /** Judges one tick's wish. All of it that is not proven safe is left out, with every reason why. */
+  static judge(request: DriveRequest): Judgement {
+    const motion = judgeMotion(request);
+    const steer = judgeSteering(request);
+    const pressure = judgePressure(request);
+    const refusal = [motion.refusal, steer.refusal, pressure.refusal].find((one) => one !== null) ?? null;
+    return {
+      drive: PermittedDrive.#make(
+        {
+          spoolSpeed: motion.spoolSpeed,
+          retractorSpeed: request.hasRetractorDrive ? motion.retractorSpeed : null,
+          bodyPressure: pressure.value,
+          musclePressures: steer.value,
+          retractorGrip: request.grip,
+        },
+        request.now,
+      ),
+      tipSpeed: motion.tipSpeed,
+      refusal,
+    };
   }
 }
 
-/** How long a permit may wait before its bytes are sent [s]: one tick at 20 Hz and some. */
-export const PERMIT_LIFE = 0.1;
+export interface Judgement {
+  readonly drive: PermittedDrive;
+  /** Tip speed permitted, + grows [m/s]. */
+  readonly tipSpeed: number;
+  readonly refusal: Refusal | null;
+}
+
+const NOTHING: Setpoints = {
+  spoolSpeed: 0,
+  retractorSpeed: null,
+  bodyPressure: null,
+  musclePressures: null,
+  retractorGrip: null,
+};
+
+interface MotionJudgement {
+  readonly spoolSpeed: number;
+  readonly retractorSpeed: number;
+  readonly tipSpeed: number;
+  readonly refusal: Refusal | null;
+}
+const STAY: MotionJudgement = { spoolSpeed: 0, retractorSpeed: 0, tipSpeed: 0, refusal: null };
+
+const judgeMotion = (request: DriveRequest): MotionJudgement => {
+  const { motion } = request.wish;
+  if (motion.kind === 'still') return STAY;
+  const reasons = [...commonReasons(request), ...bodyReasons(request)];
+  if (motion.kind === 'grow') {
+    reasons.push(...growReasons(request));
+    if (reasons.length > 0) return { ...STAY, refusal: { motion: 'grow', reasons } };
+    const tipSpeed = Math.min(request.wish.tipSpeed, request.limits.tipSpeed);
+    return { spoolSpeed: 2 * tipSpeed, retractorSpeed: 0, tipSpeed, refusal: null };
+  }
+  reasons.push(...pullReasons(request));
+  if (reasons.length > 0) return { ...STAY, refusal: { motion: motion.kind, reasons } };
+  return pull(request);
+};
+
+/** The tail moves twice as fast as the tip; a retractor inverts at the tip and the spool only takes up what comes. */
+const pull = (request: DriveRequest): MotionJudgement => {
+  const speed = Math.min(request.wish.tipSpeed, request.limits.tipSpeed, request.approachSpeed);
+  if (request.wayBack.kind !== 'by-tip-retractor')
+    return { spoolSpeed: -2 * speed, retractorSpeed: 0, tipSpeed: -speed, refusal: null };
+  const slack = request.body?.tailSlack ?? 0;
+  const held = goodValue(request.readings.tail_tension, request.now, request.limits.readingAge);
+  const { heldMax } = request.wayBack;
+  const tensionShare = held === undefined ? 0 : Math.max(0, held / heldMax);
+  // Loose tail is taken up a little faster than it comes; rising tension slows the spool before it reaches the limit.
+  const takeUp = Math.max(0, 1 + 2 * slack - Math.max(0, 2 * tensionShare - 1));
+  // The tip waits while more tail lies loose than the rig allows, so that no loop can form.
+  const tip = slack <= request.limits.tailSlackMax ? speed : 0;
+  return {
+    spoolSpeed: -2 * speed * Math.min(takeUp, 1.5),
+    retractorSpeed: tip,
+    tipSpeed: -tip,
+    refusal: null,
+  };
+};
+
+const judgeSteering = (
+  request: DriveRequest,
+): { value: readonly number[] | null; refusal: Refusal | null } => {
+  const wanted = request.musclePressures;
+  if (request.wish.steer === null || wanted === null) return { value: null, refusal: null };
+  const reasons = commonReasons(request);
+  wanted.forEach((pressure, i) => {
+    if (!(pressure >= 0 && pressure <= request.limits.musclePressureMax))
+      reasons.push({
+        code: 'muscle-range',
+        text: `Muscle ${i + 1} would need ${kPa(pressure)}; 0 to ${kPa(request.limits.musclePressureMax)} is allowed.`,
+        remedy: 'Steer less, or straighten first.',
+      });
+    const signal = `muscle_${i + 1}_pressure`;
+    if (request.described.has(signal))
+      requireGood(reasons, request, signal, request.readings[signal as keyof Readings]);
+  });
+  return reasons.length > 0
+    ? { value: null, refusal: { motion: 'steer', reasons } }
+    : { value: wanted, refusal: null };
+};
+
+const judgePressure = (request: DriveRequest): { value: number | null; refusal: Refusal | null } => {
+  const wanted = request.bodyPressure;
+  if (request.wish.pressure === 0 || wanted === null) return { value: null, refusal: null };
+  const reasons = commonReasons(request);
+  const { bodyPressureMin: min, bodyPressureMax: max } = request.limits;
+  if (!(wanted >= min && wanted <= max))
+    reasons.push({
+      code: 'pressure-range',
+      text: `Body pressure ${kPa(wanted)} is outside ${kPa(min)} to ${kPa(max)}.`,
+      remedy: 'Stay within the limits of the rig file.',
+    });
+  return reasons.length > 0
+    ? { value: null, refusal: { motion: 'pressure', reasons } }
+    : { value: wanted, refusal: null };
+};
