@@ -20,18 +20,11 @@ export interface PlantParameters {
   readonly encoderScale: number;
   readonly travelScale: number;
   readonly freeEnd: number;
-  readonly bendGain: number;
-  readonly musclePressureMax: number;
-  readonly bendMax: number;
+  /** Pressure [Pa] against contraction, and bend per contraction of one muscle [1/m]. */
+  readonly contraction: readonly (readonly [number, number])[];
+  readonly bendPerContraction: number;
   readonly muscleAngles: readonly number[];
 }
-
-/** Bend of one fully inflated muscle that the nominal contraction curve comes to, measured off its file. */
-const nominalBend = (rig: RigDescription): number => {
-  const contraction = rig.muscles.contraction.at(-1)![1];
-  const n = Math.max(1, rig.muscles.muscles.length);
-  return ((2 / n) * contraction * rig.muscles.bendGain) / (rig.muscles.radius * (1 - contraction / n));
-};
 
 export const plantParameters = (rig: RigDescription, random: Random): PlantParameters => {
   const off = (nominal: number, share: number) =>
@@ -54,9 +47,11 @@ export const plantParameters = (rig: RigDescription, random: Random): PlantParam
     encoderScale: 1 + 0.0015 * Math.max(-2, Math.min(2, random.normal())),
     travelScale: 1 + 0.0015 * Math.max(-2, Math.min(2, random.normal())),
     freeEnd: Number.isFinite(body.freeEnd) ? body.freeEnd : 1e9,
-    bendGain: off(1, 0.03),
-    musclePressureMax: rig.limits.musclePressureMax,
-    bendMax: nominalBend(rig),
+    contraction: rig.muscles.contraction,
+    bendPerContraction: off(
+      (2 * rig.muscles.bendGain) / (Math.max(1, rig.muscles.muscles.length) * rig.muscles.radius),
+      0.03,
+    ),
     muscleAngles: rig.muscles.muscles.map((muscle) => muscle.angle),
   };
 };

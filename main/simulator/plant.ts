@@ -40,6 +40,13 @@ export interface Plant {
   folded: number;
   roll: number;
   readonly body: TrueBody;
+  /** Bend and arm of the body when it was last walked along. */
+  walked: {
+    readonly at: number;
+    readonly length: number;
+    readonly bend: number;
+    readonly arm: number;
+  } | null;
 }
 
 /** Inner time step [s]. */
@@ -79,6 +86,7 @@ export const createPlant = (parameters: PlantParameters): Plant => ({
   folded: 0,
   roll: 0,
   body: createTrueBody(),
+  walked: null,
 });
 
 /** What a plant stands in. */
@@ -104,17 +112,25 @@ export const advancePlant = (plant: Plant, p: PlantParameters, world: PlantWorld
 const lie = (plant: Plant, p: PlantParameters, world: PlantWorld): void =>
   layOut(plant.body, world.walls, plant.length, p.freeEnd, trueBend(plant, p), p.radius);
 
-/** Sum of the muscles' pulls; each is proportional to its pressure's rise above a dead band (hysteresis of the braid). */
+/** Sum of the muscles' pulls along the machine's own contraction curve. */
 export const trueBend = (plant: Plant, p: PlantParameters): { right: number; up: number } => {
   let right = 0;
   let up = 0;
   plant.musclePressures.forEach((pressure, i) => {
-    const share = (pressure / p.musclePressureMax) ** 1.05;
-    right += share * Math.cos(p.muscleAngles[i]!);
-    up -= share * Math.sin(p.muscleAngles[i]!);
+    const pull = contractionAt(p.contraction, pressure) * p.bendPerContraction;
+    right += pull * Math.cos(p.muscleAngles[i]!);
+    up -= pull * Math.sin(p.muscleAngles[i]!);
   });
-  const gain = p.bendMax * p.bendGain;
-  return { right: right * gain, up: up * gain };
+  return { right, up };
+};
+
+const contractionAt = (curve: PlantParameters['contraction'], pressure: number): number => {
+  const next = curve.findIndex(([p]) => p > pressure);
+  if (next === 0) return 0;
+  const [p0, c0] = curve[next < 0 ? curve.length - 1 : next - 1]!;
+  if (next < 0) return c0;
+  const [p1, c1] = curve[next]!;
+  return c0 + ((pressure - p0) / (p1 - p0)) * (c1 - c0);
 };
 
 const stepMotors = (plant: Plant, dt: number): void => {
@@ -207,22 +223,16 @@ const stepReleased = (plant: Plant, p: PlantParameters, state: TrueState, dt: nu
   plant.tension = settle(plant.tension, hold, dt);
 };
 
-const trueState = (plant: Plant): TrueState => {
-  const cached = memory.get(plant);
-  if (cached !== undefined && Math.abs(cached.length - plant.length) < 0.01 && plant.time - cached.at < 0.1)
-    return { ...cached, length: plant.length, pressure: plant.pressure };
-  const fresh = {
-    at: plant.time,
-    length: plant.length,
-    pressure: plant.pressure,
-    bend: totalBend(plant.body),
-    arm: largestArm(plant.body),
-  };
-  memory.set(plant, fresh);
-  return fresh;
-};
 /** Bend and arm change slowly; walking the whole body every inner step would cost more than it tells. */
-const memory = new WeakMap<Plant, TrueState & { readonly at: number }>();
+const trueState = (plant: Plant): TrueState => {
+  const { walked } = plant;
+  const fresh =
+    walked !== null && Math.abs(walked.length - plant.length) < 0.01 && plant.time - walked.at < 0.1
+      ? walked
+      : { at: plant.time, length: plant.length, bend: totalBend(plant.body), arm: largestArm(plant.body) };
+  plant.walked = fresh;
+  return { ...fresh, length: plant.length, pressure: plant.pressure };
+};
 
 /** Position and attitude of the camera at the tip: x right, y down, z ahead; quaternion w x y z. */
 export const cameraPose = (
