@@ -96,12 +96,10 @@ export const createBuiltInRig = (
   const receive: BuiltInRig['receive'] = (bytes) => {
     play();
     if (faults.has('dead-unit') || faults.has('unplug')) return [];
-    return server
-      .receive(bytes)
-      .map((reply) => ({
-        bytes: spoil(reply, faults, random.uniform),
-        delay: faults.has('delayed') ? 3 * rig.serial.replyTimeout : TURNAROUND,
-      }));
+    return server.receive(bytes).map((reply) => ({
+      bytes: spoil(reply, faults, random.uniform),
+      delay: faults.has('delayed') ? 3 * rig.serial.replyTimeout : TURNAROUND,
+    }));
   };
 
   return {

@@ -11,8 +11,7 @@ const REGROWN = 0.5;
 /** The tip came further, or came again over ground where no branch has been before. */
 export const extendPath = (before: MissionState, length: number, tip: Pose): MissionState => {
   // Growing on from behind the end of a branch leaves what lies ahead as an explored way of its own.
-  const state =
-    length < currentBranch(before).reached - REGROWN ? startBranch(before, length) : before;
+  const state = length < currentBranch(before).reached - REGROWN ? startBranch(before, length) : before;
   const branch = currentBranch(state);
   const line = [...branch.line.filter((point) => point.length < length), { length, position: tip.position }];
   return {
