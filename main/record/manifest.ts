@@ -1,0 +1,71 @@
+import { createHash } from 'node:crypto';
+import { createReadStream } from 'node:fs';
+import { open, readdir, readFile, rename, stat } from 'node:fs/promises';
+import { join } from 'node:path';
+import { z } from 'zod';
+
+export const MANIFEST_NAME = 'manifest.json';
+
+/** What a mission folder says of itself. Times are RFC 3339 UTC; lengths in metres. */
+export const manifestSchema = z.object({
+  format: z.literal('foldback-mission'),
+  version: z.literal(1),
+  mission: z.string(),
+  place: z.string(),
+  rig: z.string(),
+  simulated: z.boolean(),
+  software: z.string(),
+  started: z.string(),
+  ended: z.string().nullable(),
+  summary: z
+    .object({
+      length: z.number(),
+      longest: z.number(),
+      branchPoints: z.number(),
+      waypoints: z.number(),
+      alarms: z.number(),
+    })
+    .nullable(),
+  files: z.array(z.object({ name: z.string(), bytes: z.number(), sha256: z.string() })),
+});
+export type Manifest = z.output<typeof manifestSchema>;
+
+/** Written beside and renamed, so that a reader never meets half of it. */
+export const writeManifest = async (folder: string, manifest: Manifest): Promise<void> => {
+  const path = join(folder, MANIFEST_NAME);
+  const file = await open(`${path}.part`, 'w');
+  try {
+    await file.writeFile(`${JSON.stringify(manifest, null, 2)}\n`);
+    await file.sync();
+  } finally {
+    await file.close();
+  }
+  await rename(`${path}.part`, path);
+};
+
+export const readManifest = async (folder: string): Promise<Manifest> =>
+  manifestSchema.parse(JSON.parse(await readFile(join(folder, MANIFEST_NAME), 'utf8')));
+
+/** Every file of the mission but the manifest, with size and SHA-256. */
+export const hashFiles = async (folder: string): Promise<Manifest['files']> => {
+  const names = (await readdir(folder, { recursive: true }))
+    .filter((name) => !name.startsWith(MANIFEST_NAME))
+    .sort();
+  const files: Manifest['files'] = [];
+  for (const name of names) {
+    const path = join(folder, name);
+    const facts = await stat(path);
+    if (facts.isFile())
+      files.push({ name: name.replaceAll('\\', '/'), bytes: facts.size, sha256: await sha256(path) });
+  }
+  return files;
+};
+
+const sha256 = (path: string): Promise<string> =>
+  new Promise((resolve, reject) => {
+    const hash = createHash('sha256');
+    createReadStream(path)
+      .on('data', (part) => hash.update(part))
+      .on('error', reject)
+      .on('end', () => resolve(hash.digest('hex')));
+  });
