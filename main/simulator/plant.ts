@@ -175,7 +175,7 @@ const stepGripped = (plant: Plant, p: PlantParameters, state: TrueState, dt: num
   plant.travel += inverted;
   plant.payout += plant.spoolSpeed * dt;
   const over = 2 * plant.length - plant.payout;
-  const drag = plant.spoolSpeed < 0 ? 0.5 * p.friction * p.tailWeight * plant.length : 0;
+  const drag = plant.spoolSpeed < 0 ? 0.3 * p.friction * p.tailWeight * plant.length : 0;
   let tension = 0.1 + drag;
   if (over > 0) {
     tension += TAIL_STIFFNESS * over;

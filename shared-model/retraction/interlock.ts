@@ -118,6 +118,9 @@ const judgeMotion = (request: DriveRequest): MotionJudgement => {
   return pull(request);
 };
 
+/** Loose tail that the spool leaves while the retractor pulls [m]. */
+const SLACK_KEPT = 0.08;
+
 /** The tail moves twice as fast as the tip; a retractor inverts at the tip and the spool only takes up what comes. */
 const pull = (request: DriveRequest): MotionJudgement => {
   const speed = Math.min(request.wish.tipSpeed, request.limits.tipSpeed, request.approachSpeed);
@@ -127,8 +130,8 @@ const pull = (request: DriveRequest): MotionJudgement => {
   const held = goodValue(request.readings.tail_tension, request.now, request.limits.readingAge);
   const { heldMax } = request.wayBack;
   const tensionShare = held === undefined ? 0 : Math.max(0, held / heldMax);
-  // Loose tail is taken up a little faster than it comes; rising tension slows the spool before it reaches the limit.
-  const takeUp = Math.max(0, 1 + 2 * slack - Math.max(0, 2 * tensionShare - 1));
+  // A little tail is kept loose, so that the spool never pulls against the grip; rising tension slows it further.
+  const takeUp = Math.max(0, 1 + 3 * (slack - SLACK_KEPT) - Math.max(0, 2 * tensionShare - 1));
   // The tip waits while more tail lies loose than the rig allows, so that no loop can form.
   const tip = slack <= request.limits.tailSlackMax ? speed : 0;
   return {

@@ -1,0 +1,540 @@
+import type {
+  ConsoleFrame,
+  ConsoleHello,
+  ConsoleMessage,
+  LinkStatus,
+  RigSummary,
+} from '../../shared-model/contract/frame.ts';
+import { goodValue, type Readings } from '../../shared-model/contract/reading.ts';
+import {
+  type Answer,
+  type ConsoleRequest,
+  requestSchema,
+  STILL,
+  WATCHER_REQUESTS,
+  type Wish,
+} from '../../shared-model/contract/request.ts';
+import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
+import { type Judgement, PermittedDrive } from '../../shared-model/retraction/interlock.ts';
+import type { WayBack } from '../../shared-model/retraction/verdict.ts';
+import { bodyLine } from '../../shared-model/shape/body-line.ts';
+import { createEstimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
+import type { Clock } from '../clock.ts';
+import type { Recorder } from '../record/recorder.ts';
+import type { RigLink } from '../rig/rig-link.ts';
+import type { RigDescription } from '../rig/signal.ts';
+import { alarmConditions } from './alarm-conditions.ts';
+import { type AlarmChange, acknowledgeAlarm, EMPTY_BOARD, listAlarms, stepAlarms } from './alarms.ts';
+import { ARRIVED, approachSpeed } from './approach.ts';
+import {
+  expireLease,
+  LEASE_LIFE,
+  NEUTRAL_LEASE,
+  releaseLease,
+  renewLease,
+  revokeLease,
+  wishOf,
+} from './lease.ts';
+import { createMissionLog } from './mission-log.ts';
+import { duePathEvent } from './path-events.ts';
+import { answerRequest, type RequestContext } from './requests.ts';
+import { NO_RAMPS, stepRamps } from './setpoint-ramps.ts';
+import { createTipRetractor, retractorStatus } from './tip-retractor.ts';
+import { createWayBackJudge, followShape, judgeTo, outlookLine } from './way-back.ts';
+
+/** What the console is made of; everything that touches the world comes in here. */
+export interface ConsoleParts {
+  readonly rig: RigDescription;
+  readonly summary: RigSummary;
+  readonly link: RigLink;
+  readonly recorder: Recorder;
+  readonly clock: Clock;
+  /** Identifier of the mission and version of the software, as they stand in the record. */
+  readonly mission: string;
+  readonly software: string;
+  readonly missionsDir: string;
+  /** Built-in rig in this process only. */
+  readonly simulateFault: ((name: string) => void) | null;
+  readonly send: (client: string, message: ConsoleMessage) => void;
+}
+
+export interface RunningConsole {
+  request(client: string, request: unknown): Promise<Answer>;
+  /** Says hello to the client and sends it all messages from now on. The first to join drives. */
+  join(client: string): void;
+  leave(client: string): void;
+  missionFolder(): string;
+  close(): Promise<void>;
+}
+
+/** One tick at 20 Hz, or as fast as the line allows [s]. */
+const TICK = 0.05;
+/** Large parts of a frame are sent at most this often [s]. */
+const BODY_EVERY = 0.1;
+const OUTLOOK_EVERY = 0.5;
+/** Without a permitted motion for this long the body has come to rest [s]. */
+const REST = 0.4;
+
+export const createConsole = (parts: ConsoleParts): RunningConsole => {
+  const { rig, link, recorder, clock } = parts;
+  const mission = createMissionLog(clock, recorder, (event) => broadcast({ kind: 'event', event }));
+  const clients = new Set<string>();
+  const judge = createWayBackJudge();
+  const described = new Set(Object.keys(rig.reads));
+  const hasRetractorDrive = rig.writes.tip_retractor_speed_setpoint !== undefined;
+  let driver: string | null = null;
+  let lease = NEUTRAL_LEASE;
+  let cancelLapse: () => void = () => {};
+  let estimate = createEstimate();
+  let ramps = NO_RAMPS;
+  let retractor = createTipRetractor(rig.reads.tip_retractor_attached !== undefined);
+  let attachedBefore = false;
+  let board = EMPTY_BOARD;
+  let readings: Readings = {};
+  let linkBefore: LinkStatus['state'] = 'opening';
+  let movedAt = Number.NEGATIVE_INFINITY;
+  let confirmed = false;
+  let markedLength = 0;
+  let backtrack: { press: number; target: string; label: string; length: number; arrived: boolean } | null =
+    null;
+  let refusedPress = '';
+  let seq = 0;
+  let lastTickAt = Number.NaN;
+  let bodyAt = Number.NEGATIVE_INFINITY;
+  let outlookAt = Number.NEGATIVE_INFINITY;
+  let bodyChanged = true;
+  let sendAll = true;
+  let running = true;
+  let ticking: Promise<void> = Promise.resolve();
+  let cancelTick: () => void = () => {};
+
+  const broadcast = (message: ConsoleMessage): void => {
+    for (const client of clients) parts.send(client, message);
+  };
+
+  /** Zero speeds at once, whatever the tick is doing. */
+  const stopNow = (): void => void link.stop(PermittedDrive.holdStill(clock.now(), hasRetractorDrive));
+
+  const disarm = (why: string): void => {
+    lease = revokeLease(lease, why);
+    cancelLapse();
+    stopNow();
+  };
+
+  const watchLapse = (): void => {
+    cancelLapse();
+    cancelLapse = clock.after(LEASE_LIFE + 0.001, () => {
+      const before = lease;
+      lease = expireLease(lease, clock.now());
+      if (before.state === 'held' && lease.state !== 'held') stopNow();
+    });
+  };
+
+  const tick = async (): Promise<void> => {
+    readings = await link.read(clock.now());
+    if (!running) return;
+    const now = clock.now();
+    const dt = Math.min(2 * TICK, Math.max(0, now - lastTickAt)) || TICK;
+    lastTickAt = now;
+    noteLink(link.status());
+    lease = expireLease(lease, now);
+    const status = retractorStatus(retractor, readings, now, rig.limits.readingAge);
+    const attached = status.state === 'attached';
+    noteRetractor(attached);
+    estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
+    bodyChanged ||= estimate.changedFrom < estimate.path.count;
+    followShape(judge, rig, estimate);
+    const around = { estimate, readings, retractorAttached: attached, now };
+    const wayBack = judgeTo(judge, rig, around, 0);
+    const wish = wantedNow(now);
+    const verdict = backtrack === null ? wayBack : judgeTo(judge, rig, around, backtrack.length);
+    const judged = decide(wish, verdict, attached, now, dt);
+    const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
+    confirmed = outcome?.outcome === 'confirmed';
+    noteMotion(judged, wayBack, now);
+    noteAlarms(now);
+    recordSample(judged, wayBack, now);
+    publish(judged, wayBack, now);
+  };
+
+  /** The held wish, with a backtrack that has arrived held still. */
+  const wantedNow = (now: number): Wish => {
+    const wish = wishOf(lease, now);
+    if (wish.motion.kind !== 'backtrack' || lease.state !== 'held') {
+      backtrack = null;
+      return wish;
+    }
+    const target = wish.motion.target;
+    if (backtrack === null || backtrack.press !== lease.press || backtrack.target !== target)
+      startBacktrack(target, lease.press);
+    const remaining = remainingTo(backtrack?.length ?? Number.NaN);
+    if (backtrack !== null && !backtrack.arrived && remaining !== null && remaining <= ARRIVED) {
+      backtrack = { ...backtrack, arrived: true };
+      void mission.append({ kind: 'backtrack-arrived', target, length: estimate.frame?.length ?? 0 });
+    }
+    return backtrack?.arrived ? { ...wish, motion: STILL.motion } : wish;
+  };
+
+  const startBacktrack = (target: string, press: number): void => {
+    const found = targetsOnBody(mission.state(), estimate.frame?.length ?? 0).find(
+      (one) => one.id === target,
+    );
+    if (found === undefined) {
+      backtrack = null;
+      return;
+    }
+    backtrack = { press, target, label: found.label, length: found.length, arrived: false };
+    void mission.append({
+      kind: 'backtrack-started',
+      target,
+      from: estimate.frame?.length ?? 0,
+      to: found.length,
+    });
+  };
+
+  const remainingTo = (length: number): number | null => {
+    const remaining = (estimate.frame?.length ?? Number.NaN) - length;
+    return Number.isFinite(remaining) ? remaining : null;
+  };
+
+  const decide = (wish: Wish, wayBack: WayBack, attached: boolean, now: number, dt: number): Judgement => {
+    const stepped = stepRamps(
+      ramps,
+      wish,
+      {
+        bend: estimate.frame?.bend ?? null,
+        bodyPressure: goodValue(readings.body_pressure, now, rig.limits.readingAge) ?? null,
+      },
+      rig,
+      dt,
+    );
+    const target = wish.motion.kind === 'backtrack' ? (backtrack?.length ?? Number.NaN) : 0;
+    const remaining = remainingTo(target);
+    const judged = PermittedDrive.judge({
+      now,
+      wish,
+      leaseAlive: lease.state === 'held' && now < lease.until,
+      linkOpen: link.status().state === 'open',
+      readings,
+      limits: rig.limits,
+      emergencyStopWired: rig.emergencyStopWired,
+      described,
+      body: estimate.frame,
+      estimateReasons: estimate.reasons,
+      wayBack,
+      judgedAt: now,
+      remaining,
+      approachSpeed: remaining === null ? Number.NaN : approachSpeed(remaining),
+      tipRetractorAttached: attached,
+      hasRetractorDrive,
+      grip: rig.writes.tip_retractor_grip === undefined ? null : retractor.commanded,
+      musclePressures: stepped.musclePressures,
+      bodyPressure: stepped.ramps.bodyPressure,
+    });
+    // A ramp that was refused must not run on behind the refusal.
+    if (judged.refusal === null) ramps = stepped.ramps;
+    return judged;
+  };
+
+  const noteLink = (status: LinkStatus): void => {
+    if (status.state === linkBefore) return;
+    const text =
+      status.state === 'lost'
+        ? `${status.text} ${status.remedy}`
+        : `The line to ${status.port} is ${status.state}.`;
+    // After any reconnection nothing moves until a person presses afresh.
+    lease = revokeLease(lease, 'The link was interrupted.');
+    ramps = NO_RAMPS;
+    if (status.state === 'open') estimate = { ...estimate, payout: null };
+    retractor = { ...retractor, commanded: null };
+    linkBefore = status.state;
+    void mission.append({ kind: 'link', state: status.state, text });
+  };
+
+  const noteRetractor = (attached: boolean): void => {
+    if (attached === attachedBefore) return;
+    attachedBefore = attached;
+    void mission.append({
+      kind: 'tip-retractor',
+      state: attached ? 'attached' : 'absent',
+      source: retractor.source,
+    });
+  };
+
+  const noteMotion = (judged: Judgement, wayBack: WayBack, now: number): void => {
+    if (judged.tipSpeed !== 0) movedAt = now;
+    const rests = now - movedAt > REST;
+    const frame = estimate.frame;
+    if (frame !== null) {
+      const due = duePathEvent(markedLength, frame.length, frame.tip, rests);
+      if (due !== null) {
+        markedLength = frame.length;
+        void mission.append(due);
+      }
+    }
+    noteRefusal(judged, wayBack);
+  };
+
+  /** One record a press and cause, not one a tick. */
+  const noteRefusal = (judged: Judgement, wayBack: WayBack): void => {
+    const { refusal } = judged;
+    if (
+      refusal === null ||
+      refusal.motion === 'steer' ||
+      refusal.motion === 'pressure' ||
+      lease.state !== 'held'
+    )
+      return;
+    const key = `${lease.client} ${lease.press} ${refusal.reasons.map((reason) => reason.code).join(' ')}`;
+    if (key === refusedPress) return;
+    refusedPress = key;
+    const forces = wayBack.kind === 'would-buckle' || wayBack.kind === 'clear' ? wayBack.worst : null;
+    void mission.append({
+      kind: 'pull-refused',
+      motion: refusal.motion,
+      length: estimate.frame?.length ?? null,
+      forces:
+        forces === null
+          ? null
+          : { ...forces, ratio: Number.isFinite(forces.ratio) ? forces.ratio : Number.MAX_VALUE },
+      margin: wayBack.kind === 'cannot-judge' ? null : wayBack.margin,
+      reasons: refusal.reasons.map((reason) => ({ ...reason })),
+    });
+  };
+
+  const noteAlarms = (now: number): void => {
+    const { emergencyStopWired, limits } = rig;
+    const stepped = stepAlarms(
+      board,
+      alarmConditions({
+        link: link.status(),
+        readings,
+        limits,
+        emergencyStopWired,
+        recording: recorder.status(),
+      }),
+      now,
+    );
+    board = stepped.board;
+    noteAlarmChanges(stepped.changes);
+  };
+  const noteAlarmChanges = (changes: readonly AlarmChange[]): void => {
+    for (const { change, alarm } of changes)
+      void mission.append({
+        kind: 'alarm',
+        id: alarm.id,
+        change,
+        priority: alarm.priority,
+        cause: alarm.cause,
+      });
+  };
+
+  const recordSample = (judged: Judgement, wayBack: WayBack, now: number): void => {
+    const values: Record<string, number> = {};
+    const bad: string[] = [];
+    for (const [name, reading] of Object.entries(readings)) {
+      if (reading.quality === 'good') values[name] = reading.value;
+      else bad.push(name);
+    }
+    const worst =
+      wayBack.kind === 'clear' || wayBack.kind === 'would-buckle' ? wayBack.worst.ratio : Number.NaN;
+    recorder.sample({
+      at: now,
+      values,
+      bad,
+      length: estimate.frame?.length ?? null,
+      ratio: Number.isFinite(worst) ? worst : null,
+      asked: askedSpeed(wishOf(lease, now)),
+      permitted: judged.tipSpeed,
+    });
+  };
+
+  const publish = (judged: Judgement, wayBack: WayBack, now: number): void => {
+    const withBody = sendAll || (bodyChanged && now - bodyAt >= BODY_EVERY);
+    const withOutlook = sendAll || now - outlookAt >= OUTLOOK_EVERY;
+    if (withBody) [bodyAt, bodyChanged] = [now, false];
+    if (withOutlook) outlookAt = now;
+    sendAll = false;
+    const frame: ConsoleFrame = {
+      kind: 'frame',
+      seq: seq++,
+      at: now,
+      link: link.status(),
+      readings,
+      estimate: estimate.frame,
+      wayBack,
+      hold:
+        lease.state === 'held'
+          ? { state: 'held', press: lease.press, wish: lease.wish }
+          : lease.state === 'burnt'
+            ? { state: 'burnt', press: lease.press, text: lease.text }
+            : { state: 'neutral' },
+      drive: {
+        asked: askedSpeed(wishOf(lease, now)),
+        permitted: judged.tipSpeed,
+        confirmed,
+        bodyPressureSetpoint: ramps.bodyPressure,
+        musclePressureSetpoints: [],
+      },
+      refusal: judged.refusal,
+      tipRetractor: retractorStatus(retractor, readings, now, rig.limits.readingAge),
+      backtrack:
+        backtrack === null
+          ? null
+          : {
+              target: backtrack.target,
+              remaining: remainingTo(backtrack.length) ?? 0,
+              arrived: backtrack.arrived,
+            },
+      alarms: listAlarms(board),
+      recording: recorder.status(),
+      ...(withBody ? { body: bodyLine(estimate.path) } : {}),
+      ...(withOutlook ? { outlook: outlookLine(judge, estimate, rig) } : {}),
+    };
+    broadcast(frame);
+  };
+
+  const loop = (): void => {
+    const began = clock.now();
+    ticking = tick()
+      .catch((error: unknown) => {
+        // A bug in a tick must not leave a motor running on its last setpoint.
+        disarm('The console met an internal error.');
+        process.stderr.write(`tick failed: ${error instanceof Error ? error.stack : String(error)}\n`);
+      })
+      .then(() => {
+        if (running) cancelTick = clock.after(Math.max(0.001, TICK - (clock.now() - began)), loop);
+      });
+  };
+
+  const hello = (client: string): ConsoleHello => ({
+    kind: 'hello',
+    role: client === driver ? 'driver' : 'watcher',
+    rig: parts.summary,
+    events: mission.events(),
+  });
+
+  const setDriver = (client: string | null, change: 'took-over' | 'left'): void => {
+    disarm('Another window drives now.');
+    lease = NEUTRAL_LEASE;
+    driver = client;
+    void mission.append({ kind: 'driver', client: client ?? 'nobody', change });
+    for (const one of clients) parts.send(one, hello(one));
+  };
+
+  const context: RequestContext = {
+    rig,
+    recorder,
+    mission,
+    missionsDir: parts.missionsDir,
+    simulateFault: parts.simulateFault,
+    estimate: () => estimate.frame,
+    readings: () => readings,
+    isMoving: () => clock.now() - movedAt <= REST || lease.state === 'held',
+    retractor: () => retractor,
+    setRetractor: (next) => {
+      retractor = next;
+    },
+    acknowledge: (id) => {
+      const stepped = acknowledgeAlarm(board, id);
+      board = stepped.board;
+      noteAlarmChanges(stepped.changes);
+      return stepped.changes.length > 0;
+    },
+    reconnect: () => {
+      disarm('The link is opened again.');
+      estimate = createEstimate();
+      judge.arms.count = 0;
+      link.reconnect();
+    },
+    now: () => clock.now(),
+  };
+
+  const drive = (client: string, request: Extract<ConsoleRequest, { kind: 'hold' | 'release' }>): Answer => {
+    const now = clock.now();
+    if (request.kind === 'release') {
+      const before = lease;
+      lease = releaseLease(lease, client, request.press);
+      if (before.state === 'held' && lease.state !== 'held') stopNow();
+      return { ok: true };
+    }
+    lease = renewLease(lease, { client, press: request.press, seq: request.seq, wish: request.wish }, now);
+    if (lease.state !== 'held') {
+      if (lease.state === 'burnt') stopNow();
+      return {
+        ok: false,
+        code: 'not-held',
+        text: lease.state === 'burnt' ? lease.text : 'This press is over. Press afresh.',
+      };
+    }
+    watchLapse();
+    return { ok: true };
+  };
+
+  void mission.append({
+    kind: 'mission-started',
+    mission: parts.mission,
+    place: rig.place.name,
+    rig: rig.name,
+    simulated: rig.simulated,
+    software: parts.software,
+  });
+  loop();
+
+  return {
+    request: async (client, raw) => {
+      const parsed = requestSchema.safeParse(raw);
+      if (!parsed.success)
+        return {
+          ok: false,
+          code: 'bad-request',
+          text: `Not a request: ${parsed.error.issues.map((issue) => `${issue.path.join('.') || 'request'}: ${issue.message}`).join('; ')}`,
+        };
+      const request = parsed.data;
+      if (client !== driver && !WATCHER_REQUESTS.includes(request.kind))
+        return {
+          ok: false,
+          code: 'watching',
+          text: 'This window watches. Take over to drive; Stop works from here too.',
+        };
+      if (request.kind === 'stop') {
+        disarm('Stop was pressed.');
+        void mission.append({ kind: 'stopped', by: client === driver ? 'driver' : 'watcher' });
+        return { ok: true };
+      }
+      if (request.kind === 'take-over') {
+        if (!clients.has(client))
+          return { ok: false, code: 'not-joined', text: 'This window has not joined the console.' };
+        if (client !== driver) setDriver(client, 'took-over');
+        return { ok: true };
+      }
+      if (request.kind === 'hold' || request.kind === 'release') return drive(client, request);
+      return answerRequest(request, context);
+    },
+    join: (client) => {
+      clients.add(client);
+      if (driver === null) driver = client;
+      sendAll = true;
+      parts.send(client, hello(client));
+    },
+    leave: (client) => {
+      if (!clients.delete(client) || client !== driver) return;
+      setDriver(null, 'left');
+    },
+    missionFolder: () => recorder.folder,
+    close: async () => {
+      if (!running) return;
+      running = false;
+      cancelTick();
+      disarm('The console is closing.');
+      await ticking;
+      await link.stop(PermittedDrive.holdStill(clock.now(), hasRetractorDrive));
+      await mission.append({ kind: 'mission-ended', reason: 'The console was closed.' });
+      await recorder.close();
+      await link.close();
+    },
+  };
+};
+
+const askedSpeed = (wish: Wish): number =>
+  wish.motion.kind === 'still' ? 0 : wish.motion.kind === 'grow' ? wish.tipSpeed : -wish.tipSpeed;

@@ -1,0 +1,118 @@
+import type { OutlookLine } from '../../shared-model/contract/frame.ts';
+import { goodValue, type Readings } from '../../shared-model/contract/reading.ts';
+import { type Arms, createArms, updateArms } from '../../shared-model/retraction/arms.ts';
+import {
+  createJudgeSpace,
+  defaultMargin,
+  type JudgeSpace,
+  judgeWayBack,
+  type WayBackInput,
+} from '../../shared-model/retraction/judge.ts';
+import { findRemedies } from '../../shared-model/retraction/remedies.ts';
+import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
+import type { Estimate } from '../../shared-model/shape/estimate.ts';
+import type { RigDescription } from '../rig/signal.ts';
+
+/** Remedies take several judgements; twice a second is soon enough for a person [s]. */
+const REMEDIES_EVERY = 0.5;
+/** Points of the chart. */
+const CHART_POINTS = 160;
+
+/** The judge of one rig with what it keeps from tick to tick. */
+export interface WayBackJudge {
+  readonly arms: Arms;
+  readonly space: JudgeSpace;
+  readonly targetSpace: JudgeSpace;
+  remedies: readonly Remedy[];
+  remediesAt: number;
+}
+
+export const createWayBackJudge = (): WayBackJudge => ({
+  arms: createArms(256),
+  space: createJudgeSpace(),
+  targetSpace: createJudgeSpace(),
+  remedies: [],
+  remediesAt: Number.NEGATIVE_INFINITY,
+});
+
+export interface Surroundings {
+  readonly estimate: Estimate;
+  readonly readings: Readings;
+  readonly retractorAttached: boolean;
+  readonly now: number;
+}
+
+/** The verdict on coming back to `target` [m]; the one to the base (0) also carries remedies and feeds the chart. */
+export const judgeTo = (
+  judge: WayBackJudge,
+  rig: RigDescription,
+  around: Surroundings,
+  target: number,
+): WayBack => {
+  const input = inputOf(judge, rig, around, target);
+  const verdict = judgeWayBack(input, target === 0 ? judge.space : judge.targetSpace);
+  if (verdict.kind !== 'would-buckle') return verdict;
+  if (around.now - judge.remediesAt >= REMEDIES_EVERY) {
+    judge.remedies = findRemedies(
+      { ...input, target: 0 },
+      rig.limits,
+      rig.writes.tip_retractor_speed_setpoint !== undefined,
+    );
+    judge.remediesAt = around.now;
+  }
+  return { ...verdict, remedies: judge.remedies };
+};
+
+/** To be called once a tick, before judging: only stations that changed are worked out again. */
+export const followShape = (judge: WayBackJudge, rig: RigDescription, estimate: Estimate): void =>
+  updateArms(judge.arms, estimate.path, estimate.changedFrom, rig.body.guideSetback);
+
+const inputOf = (
+  judge: WayBackJudge,
+  rig: RigDescription,
+  around: Surroundings,
+  target: number,
+): WayBackInput => {
+  const { estimate, readings, now } = around;
+  const age = rig.limits.readingAge;
+  return {
+    shape: estimate.frame === null ? null : estimate.path,
+    arms: judge.arms,
+    body: rig.body,
+    margin: defaultMargin(rig.body),
+    pressure: goodValue(readings.body_pressure, now, age) ?? null,
+    pressureBand: rig.limits.pressureAccuracy,
+    payout: goodValue(readings.tail_payout, now, age) ?? null,
+    // Faster takes more tension; judged at the fastest that may be asked for.
+    tipSpeed: rig.limits.tipSpeed,
+    target,
+    gravity: {
+      weight: rig.body.weight,
+      payload: rig.body.payload,
+      direction: rig.place.gravity,
+      supported: rig.body.onGround ? Number.POSITIVE_INFINITY : 0,
+    },
+    retractor: around.retractorAttached ? { heldTension: heldTension(readings, now, age) } : null,
+  };
+};
+
+const heldTension = (readings: Readings, now: number, age: number): number | null => {
+  const tension = goodValue(readings.tail_tension, now, age);
+  return tension === undefined ? null : Math.max(0, tension);
+};
+
+/** The last judgement to the base as a chart, thinned. */
+export const outlookLine = (judge: WayBackJudge, estimate: Estimate, rig: RigDescription): OutlookLine => {
+  const { nominal } = judge.space;
+  const stride = Math.max(1, Math.ceil(nominal.count / CHART_POINTS));
+  const stations = Array.from({ length: nominal.count }, (_, i) => i).filter(
+    (i) => i > 0 && (i % stride === 0 || i === nominal.count - 1),
+  );
+  const pick = (array: Float64Array) => stations.map((i) => Number(array[i]!.toPrecision(5)));
+  return {
+    length: pick(estimate.path.s),
+    invert: pick(nominal.baseTension),
+    buckle: pick(nominal.capacity),
+    margin: defaultMargin(rig.body),
+  };
+};
