@@ -430,7 +430,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     simulateFault: parts.simulateFault,
     estimate: () => estimate.frame,
     readings: () => readings,
-    isMoving: () => clock.now() - movedAt <= REST || lease.state === 'held',
+    isMoving: () => lease.state === 'held',
     retractor: () => retractor,
     setRetractor: (next) => {
       retractor = next;
