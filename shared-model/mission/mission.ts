@@ -1,6 +1,7 @@
 import type { ForcesAt } from '../retraction/verdict.ts';
 import type { Pose, Vec3 } from '../shape/vector.ts';
 import type { MissionEvent } from './event.ts';
+import { branchAt } from './lineage.ts';
 import { enterArm, extendPath, markBranchPoint, retractPath } from './path-tree.ts';
 
 export type ArmState = 'open' | 'current' | 'explored';
@@ -23,7 +24,7 @@ export interface Branch {
   readonly arm: { readonly branchPoint: string; readonly name: string } | null;
   readonly from: number;
   readonly reached: number;
-  /** Tip positions with the body length at each, rising. */
+  /** Tip positions with the body length at each, rising; the first is the joint with the parent, at or before `from`. */
   readonly line: readonly { readonly length: number; readonly position: Vec3 }[];
 }
 
@@ -48,6 +49,13 @@ export interface PullRefusal {
   readonly text: string;
 }
 
+export interface Backtrack {
+  readonly target: string;
+  readonly from: number;
+  readonly to: number;
+  readonly arrived: boolean;
+}
+
 /** The whole mission: the fold of its events, in live driving, recovery, replay and report alike. */
 export interface MissionState {
   readonly id: string | null;
@@ -65,8 +73,11 @@ export interface MissionState {
   readonly waypoints: readonly Waypoint[];
   readonly refusals: readonly PullRefusal[];
   readonly tipRetractor: 'attached' | 'absent';
+  /** The last backtrack asked for, from one body length to another [m]. */
+  readonly backtrack: Backtrack | null;
   readonly alarms: number;
   readonly stops: number;
+  readonly linkLosses: number;
   readonly lastSeq: number;
 }
 
@@ -87,8 +98,10 @@ export const emptyMission: MissionState = {
   waypoints: [],
   refusals: [],
   tipRetractor: 'absent',
+  backtrack: null,
   alarms: 0,
   stops: 0,
+  linkLosses: 0,
   lastSeq: -1,
 };
 
@@ -117,28 +130,26 @@ export const reduceMission = (before: MissionState, event: MissionEvent): Missio
     case 'extended':
       return extendPath(state, event.length, event.tip);
     case 'retracted':
-      return retractPath(state, event.length);
+      return retractPath(state, event.length, event.tip);
     case 'branch-point-marked':
       return markBranchPoint(state, event);
     case 'arm-entered':
       return enterArm(state, event.branchPoint, event.arm);
     case 'waypoint-logged':
-      return { ...state, waypoints: [...state.waypoints, waypointOf(state, event)] };
+      return logWaypoint(state, event);
     case 'pull-refused':
+      return { ...state, refusals: [...state.refusals, refusalOf(event)] };
+    case 'backtrack-started':
       return {
         ...state,
-        refusals: [
-          ...state.refusals,
-          {
-            at: event.at,
-            time: event.time,
-            motion: event.motion,
-            length: event.length,
-            forces: event.forces,
-            text: event.reasons.map((reason) => reason.text).join(' '),
-          },
-        ],
+        backtrack: { target: event.target, from: event.from, to: event.to, arrived: false },
       };
+    case 'backtrack-arrived':
+      return state.backtrack?.target === event.target
+        ? { ...state, backtrack: { ...state.backtrack, arrived: true } }
+        : state;
+    case 'link':
+      return event.state === 'lost' ? { ...state, linkLosses: state.linkLosses + 1 } : state;
     case 'tip-retractor':
       return { ...state, tipRetractor: event.state };
     case 'alarm':
@@ -150,17 +161,30 @@ export const reduceMission = (before: MissionState, event: MissionEvent): Missio
   }
 };
 
-const waypointOf = (
+const logWaypoint = (
   state: MissionState,
   event: Extract<MissionEvent, { kind: 'waypoint-logged' }>,
-): Waypoint => ({
-  id: event.id,
-  number: state.waypoints.length + 1,
-  note: event.note,
-  length: event.length,
-  branch: state.currentBranch,
-  tip: event.tip,
-  picture: event.picture,
-  readings: event.readings,
+): MissionState => {
+  if (state.waypoints.some((one) => one.id === event.id)) return state;
+  const waypoint: Waypoint = {
+    id: event.id,
+    number: state.waypoints.length + 1,
+    note: event.note,
+    length: event.length,
+    branch: branchAt(state, event.length).id,
+    tip: event.tip,
+    picture: event.picture,
+    readings: event.readings,
+    time: event.time,
+  };
+  return { ...state, waypoints: [...state.waypoints, waypoint] };
+};
+
+const refusalOf = (event: Extract<MissionEvent, { kind: 'pull-refused' }>): PullRefusal => ({
+  at: event.at,
   time: event.time,
+  motion: event.motion,
+  length: event.length,
+  forces: event.forces,
+  text: event.reasons.map((reason) => reason.text).join(' '),
 });

@@ -1,5 +1,5 @@
+import { AT_BRANCH_POINT, liesOnBody, lineage } from './lineage.ts';
 import type { Branch, BranchPoint, MissionState, Waypoint } from './mission.ts';
-import { AT_BRANCH_POINT, currentBranch } from './path-tree.ts';
 
 /** A place on the present body that the tip can come back to. */
 export interface BacktrackTarget {
@@ -9,37 +9,20 @@ export interface BacktrackTarget {
   readonly length: number;
 }
 
-/** The current branch and those it came from, trunk last. */
-const lineage = (state: MissionState): Branch[] => {
-  const chain: Branch[] = [];
-  let branch: Branch | undefined = currentBranch(state);
-  while (branch !== undefined && !chain.includes(branch)) {
-    chain.push(branch);
-    const parent: string | null = branch.parent;
-    branch = parent === null ? undefined : state.branches.find((one) => one.id === parent);
-  }
-  return chain;
-};
-
-/** Whether something logged at `length` on `branch` lies on the body as it lies now, `bodyLength` long. */
-const onBody = (
+/** What was logged on the way that the body lies in now, as far as a body of `bodyLength` [m] reaches. */
+export const onBody = (
   state: MissionState,
-  place: { branch: string; length: number },
-  bodyLength: number,
-): boolean => {
-  if (!(place.length <= bodyLength + AT_BRANCH_POINT)) return false;
-  const chain = lineage(state);
-  const i = chain.findIndex((branch) => branch.id === place.branch);
-  if (i < 0) return false;
-  const child = chain[i - 1];
-  return child === undefined || place.length <= child.from + AT_BRANCH_POINT;
-};
+  bodyLength = state.length,
+): { readonly waypoints: Waypoint[]; readonly branchPoints: BranchPoint[] } => ({
+  waypoints: waypointsOnBody(state, bodyLength),
+  branchPoints: branchPointsOnBody(state, bodyLength),
+});
 
 export const waypointsOnBody = (state: MissionState, bodyLength = state.length): Waypoint[] =>
-  state.waypoints.filter((waypoint) => onBody(state, waypoint, bodyLength));
+  state.waypoints.filter((waypoint) => liesOnBody(state, waypoint, bodyLength));
 
 export const branchPointsOnBody = (state: MissionState, bodyLength = state.length): BranchPoint[] =>
-  state.branchPoints.filter((point) => onBody(state, point, bodyLength));
+  state.branchPoints.filter((point) => liesOnBody(state, point, bodyLength));
 
 /** Everything on the body that one can backtrack to, nearest to the tip first. */
 export const targetsOnBody = (state: MissionState, bodyLength = state.length): BacktrackTarget[] =>
@@ -58,10 +41,21 @@ export const targetsOnBody = (state: MissionState, bodyLength = state.length): B
     })),
   ].sort((a, b) => b.length - a.length);
 
-/** Explored ways that the body does not lie in now. */
+/** Explored ways, or the far parts of them, that the body does not lie in now. */
 export const ghosts = (state: MissionState): Branch[] => {
-  const chain = new Set(lineage(state).map((branch) => branch.id));
-  return state.branches.filter((branch) => !chain.has(branch.id) && branch.reached > branch.from);
+  const chain = lineage(state);
+  return state.branches.flatMap((branch) => {
+    const i = chain.indexOf(branch);
+    const left = i < 0 ? branch.from : i === 0 ? state.length : (chain[i - 1] as Branch).from;
+    if (!(branch.reached - left > AT_BRANCH_POINT)) return [];
+    return [i < 0 ? branch : beyond(branch, left)];
+  });
+};
+
+/** The part of a branch beyond a body length, from the last drawn point at or before it. */
+const beyond = (branch: Branch, length: number): Branch => {
+  const joint = branch.line.findLastIndex((point) => point.length <= length);
+  return { ...branch, from: Math.max(branch.from, length), line: branch.line.slice(Math.max(0, joint)) };
 };
 
 /** Arms that nobody has been in yet. */
