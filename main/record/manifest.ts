@@ -1,8 +1,9 @@
 import { createHash } from 'node:crypto';
 import { createReadStream } from 'node:fs';
-import { open, readdir, readFile, rename, stat } from 'node:fs/promises';
+import { readdir, readFile, rename, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { z } from 'zod';
+import { syncFolder, writeNewFile } from './durable-file.ts';
 
 export const MANIFEST_NAME = 'manifest.json';
 
@@ -33,14 +34,10 @@ export type Manifest = z.output<typeof manifestSchema>;
 /** Written beside and renamed, so that a reader never meets half of it. */
 export const writeManifest = async (folder: string, manifest: Manifest): Promise<void> => {
   const path = join(folder, MANIFEST_NAME);
-  const file = await open(`${path}.part`, 'w');
-  try {
-    await file.writeFile(`${JSON.stringify(manifest, null, 2)}\n`);
-    await file.sync();
-  } finally {
-    await file.close();
-  }
+  await rm(`${path}.part`, { force: true });
+  await writeNewFile(`${path}.part`, `${JSON.stringify(manifest, null, 2)}\n`);
   await rename(`${path}.part`, path);
+  await syncFolder(folder);
 };
 
 export const readManifest = async (folder: string): Promise<Manifest> =>

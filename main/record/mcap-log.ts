@@ -1,6 +1,7 @@
-import { type FileHandle, open, stat } from 'node:fs/promises';
+import { type FileHandle, open, rm, stat } from 'node:fs/promises';
 import { crc32 } from 'node:zlib';
 import { McapChunkBuilder, McapRecordBuilder, type McapTypes } from '@mcap/core';
+import { LogLost } from './disk-trouble.ts';
 
 /** A JSON channel of the log. */
 export interface LogChannel {
@@ -25,10 +26,13 @@ export interface McapLog {
   bytes(): number;
   /** Rejects when nothing of `messages` is to be counted on; the file then still ends after its last whole chunk. */
   write(messages: readonly LogMessage[]): Promise<void>;
-  /** Index and footer. */
+  /** Index and footer, and closes the file. */
   end(): Promise<void>;
+  /** Lets go of a log that cannot be written any more. */
+  abandon(): Promise<void>;
 }
 
+/** Begins a log. Rejects with `EEXIST` where there is a file already; otherwise leaves none behind when it fails. */
 export const createMcapLog = async (
   path: string,
   channels: readonly LogChannel[],
@@ -50,14 +54,13 @@ export const createMcapLog = async (
     metadata: new Map<string, string>(),
   }));
   const indices: McapTypes.ChunkIndex[] = [];
-  const counts = new Map<number, bigint>();
+  let counts = new Map<number, bigint>();
   let position = 0;
-  let metadataIndex: McapTypes.MetadataIndex | null = null;
 
   const writeAll = async (bytes: Uint8Array): Promise<void> => {
     try {
       // A deleted file would go on taking bytes that nobody can ever read.
-      if ((await stat(path)).ino !== inode) throw new Error('the log was replaced by another file');
+      if ((await stat(path)).ino !== inode) throw new LogLost('the log was replaced by another file');
       await writeFully(file, bytes, position);
       await file.datasync();
     } catch (error) {
@@ -74,35 +77,55 @@ export const createMcapLog = async (
   for (const topic of topics) head.writeChannel(topic);
   const metadataStart = BigInt(head.length);
   const metadataLength = head.writeMetadata({ name: 'mission', metadata: new Map(facts) });
-  metadataIndex = { name: 'mission', offset: metadataStart, length: metadataLength };
-  await writeAll(head.buffer);
+  const metadataIndex = { name: 'mission', offset: metadataStart, length: metadataLength };
+  try {
+    await writeAll(head.buffer);
+  } catch (error) {
+    await file.close().catch(() => {});
+    await rm(path, { force: true }).catch(() => {});
+    throw error;
+  }
 
   return {
     path,
     bytes: () => position,
     write: async (messages) => {
       if (messages.length === 0) return;
-      const { bytes, index } = chunkOf(messages, BigInt(position));
+      const after = new Map(counts);
+      const { bytes, index } = chunkOf(messages, BigInt(position), after);
       await writeAll(bytes);
       indices.push(index);
-      for (const { channel } of messages) counts.set(channel, (counts.get(channel) ?? 0n) + 1n);
+      counts = after;
     },
     end: async () => {
-      await writeAll(tailOf({ position, schemas, topics, indices, counts, metadataIndex }));
-      await file.close();
+      try {
+        await writeAll(tailOf({ position, schemas, topics, indices, counts, metadataIndex }));
+      } finally {
+        await file.close();
+      }
     },
+    abandon: () => file.close().catch(() => {}),
   };
 };
 
-/** One chunk with its message index, and the entry it gets in the summary. */
+/** One chunk with its message index, and the entry it gets in the summary; `counts` number the messages of a channel. */
 const chunkOf = (
   messages: readonly LogMessage[],
   start: bigint,
+  counts: Map<number, bigint>,
 ): { bytes: Uint8Array; index: McapTypes.ChunkIndex } => {
   const builder = new McapChunkBuilder({ useMessageIndex: true });
-  messages.forEach(({ channel, time, data }, i) =>
-    builder.addMessage({ channelId: channel, sequence: i, logTime: time, publishTime: time, data }),
-  );
+  for (const { channel, time, data } of messages) {
+    const count = counts.get(channel) ?? 0n;
+    counts.set(channel, count + 1n);
+    builder.addMessage({
+      channelId: channel,
+      sequence: Number(count & 0xffffffffn),
+      logTime: time,
+      publishTime: time,
+      data,
+    });
+  }
   const times = { messageStartTime: builder.messageStartTime, messageEndTime: builder.messageEndTime };
   const records = builder.buffer;
   const size = BigInt(records.length);
@@ -139,7 +162,7 @@ interface Summary {
   readonly topics: readonly McapTypes.Channel[];
   readonly indices: readonly McapTypes.ChunkIndex[];
   readonly counts: ReadonlyMap<number, bigint>;
-  readonly metadataIndex: McapTypes.MetadataIndex | null;
+  readonly metadataIndex: McapTypes.MetadataIndex;
 }
 
 /** Data end, summary, footer and magic (MCAP specification, file structure). */
@@ -156,13 +179,13 @@ const tailOf = (summary: Summary): Uint8Array => {
     schemaCount: summary.schemas.length,
     channelCount: summary.topics.length,
     attachmentCount: 0,
-    metadataCount: summary.metadataIndex === null ? 0 : 1,
+    metadataCount: 1,
     chunkCount: summary.indices.length,
     messageStartTime: starts.reduce((a, b) => (b < a ? b : a), starts[0] ?? 0n),
     messageEndTime: ends.reduce((a, b) => (b > a ? b : a), ends[0] ?? 0n),
     channelMessageCounts: new Map(summary.counts),
   });
-  if (summary.metadataIndex !== null) record.writeMetadataIndex(summary.metadataIndex);
+  record.writeMetadataIndex(summary.metadataIndex);
   for (const index of summary.indices) record.writeChunkIndex(index);
   record.writeFooter({ summaryStart, summaryOffsetStart: 0n, summaryCrc: 0 });
   record.writeMagic();

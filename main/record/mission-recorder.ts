@@ -1,47 +1,30 @@
-import { mkdir, open } from 'node:fs/promises';
+import { mkdir, rm } from 'node:fs/promises';
 import { join } from 'node:path';
-import { z } from 'zod';
 import type { RecordingStatus } from '../../shared-model/contract/frame.ts';
 import { type MissionEvent, missionEventSchema } from '../../shared-model/mission/event.ts';
 import { foldMission } from '../../shared-model/mission/mission.ts';
 import type { Clock } from '../clock.ts';
+import { explainDisk, isLost } from './disk-trouble.ts';
+import { syncFolder, writeNewFile } from './durable-file.ts';
+import { withComment } from './jpeg-comment.ts';
+import { EVENTS, LOG_CHANNELS, LOG_NAME, READINGS } from './log-channels.ts';
 import { hashFiles, type Manifest, writeManifest } from './manifest.ts';
 import { createMcapLog, type LogMessage, type McapLog } from './mcap-log.ts';
+import { folderName, type MissionFacts } from './mission-facts.ts';
 import type { ReadingsSample, Recorder } from './recorder.ts';
+import { type Told, thinSample } from './sample-coding.ts';
 
-export interface MissionFacts {
-  readonly mission: string;
-  readonly place: string;
-  readonly rig: string;
-  readonly simulated: boolean;
-  readonly software: string;
+interface WaitingSample {
+  readonly sample: ReadingsSample;
+  readonly wall: Date;
+  /** Monotonic [s]. */
+  readonly since: number;
 }
 
-export const EVENTS_TOPIC = '/events';
-export const READINGS_TOPIC = '/readings';
-
-export const sampleSchema = z.object({
-  at: z.number(),
-  values: z.record(z.string(), z.number()),
-  bad: z.array(z.string()),
-  length: z.number().nullable(),
-  ratio: z.number().nullable(),
-  asked: z.number(),
-  permitted: z.number(),
-});
-
-const CHANNELS = [
-  {
-    topic: EVENTS_TOPIC,
-    schemaName: 'foldback.MissionEvent',
-    jsonSchema: z.toJSONSchema(missionEventSchema),
-  },
-  { topic: READINGS_TOPIC, schemaName: 'foldback.Readings', jsonSchema: z.toJSONSchema(sampleSchema) },
-] as const;
-
-/** Chunks are closed at this size or age, whichever comes first; a crash loses no more than the age. */
+/** A chunk is closed at this size; with its index it stays below 64 KiB. */
 const CHUNK_BYTES = 48 * 1024;
-const CHUNK_AGE = 0.8;
+/** A sample waits no longer than this for its chunk [s]; with the write itself a crash loses less than a second. */
+const SAMPLE_WAITS = 0.75;
 /** After a failed write, the next try [s]. */
 const RETRY_AFTER = 2;
 /** Samples kept while nothing can be written: one minute at 20 Hz. Events are all kept. */
@@ -55,197 +38,199 @@ export const openRecorder = async (
 ): Promise<Recorder> => {
   const started = clock.wall().toISOString();
   const since = clock.now();
-  const name = folderName(started, facts);
   const events: MissionEvent[] = [];
-  let folder = join(missionsDir, name);
+  /** How many of `events` are in the present log. */
+  let written = 0;
+  let samples: WaitingSample[] = [];
+  let told: Told | null = null;
+  let part = 1;
+  let folder = join(missionsDir, folderName(started, facts, part));
   let log: McapLog | null = null;
-  let queue: LogMessage[] = [];
-  let queuedBytes = 0;
-  let oldest = Number.NaN;
   let trouble: string | null = null;
   let retryAt = Number.NEGATIVE_INFINITY;
-  let attempts = 0;
-  let busy: Promise<boolean> = Promise.resolve(true);
+  let cancelTimer: (() => void) | null = null;
+  let busy: Promise<unknown> = Promise.resolve();
   let closed = false;
 
   const manifest = (ended: string | null, files: Manifest['files']): Manifest => {
-    const state = foldMission(events);
-    return {
-      format: 'foldback-mission',
-      version: 1,
-      ...facts,
-      started,
-      ended,
-      summary: {
-        length: state.length,
-        longest: state.longest,
-        branchPoints: state.branchPoints.length,
-        waypoints: state.waypoints.length,
-        alarms: state.alarms,
-      },
-      files,
+    const { length, longest, branchPoints, waypoints, alarms } = foldMission(events);
+    const summary = {
+      length,
+      longest,
+      branchPoints: branchPoints.length,
+      waypoints: waypoints.length,
+      alarms,
     };
+    return { format: 'foldback-mission', version: 1, ...facts, started, ended, summary, files };
   };
 
+  /** A fresh folder and log. The log before, if any, stays as it is; the new one tells the whole story again. */
   const openLog = async (): Promise<McapLog> => {
-    folder = join(missionsDir, attempts === 0 ? name : `${name}-part-${attempts + 1}`);
-    await mkdir(join(folder, 'stills'), { recursive: true });
-    const opened = await createMcapLog(
-      join(folder, 'mission.mcap'),
-      CHANNELS,
-      new Map(Object.entries({ ...facts, simulated: String(facts.simulated), started })),
-    );
-    await writeManifest(folder, manifest(null, []));
-    attempts++;
-    return opened;
-  };
-
-  /** Writes what waits; at most one at a time, each taking all that has gathered. */
-  const flush = (): Promise<boolean> => {
-    busy = busy.then(writeWaiting);
-    return busy;
-  };
-  const writeWaiting = async (): Promise<boolean> => {
-    if (queue.length === 0 && log !== null) return trouble === null;
-    if (trouble !== null && clock.now() < retryAt) return false;
-    try {
-      if (log === null) {
-        log = await openLog();
-        // A fresh log tells the whole story so far, whatever became of the one before.
-        if (attempts > 1)
-          queue = [...events.map(eventMessage), ...queue.filter((message) => message.channel === 1)];
-      }
-      while (queue.length > 0) {
-        const part = nextChunk(queue);
-        await log.write(part);
-        queue = queue.slice(part.length);
-      }
-      queuedBytes = 0;
-      trouble = null;
-      return true;
-    } catch (error) {
-      trouble = explain(error, folder);
-      retryAt = clock.now() + RETRY_AFTER;
-      // A log that is gone is begun anew elsewhere; one that is merely full is tried again.
-      if (isGone(error)) log = null;
-      queue = keepLatest(queue);
-      return false;
+    for (; ; part++) {
+      folder = join(missionsDir, folderName(started, facts, part));
+      await mkdir(join(folder, 'stills'), { recursive: true });
+      const metadata = new Map(Object.entries({ ...facts, simulated: String(facts.simulated), started }));
+      const opened = await createMcapLog(join(folder, LOG_NAME), LOG_CHANNELS, metadata).catch((error) => {
+        if ((error as NodeJS.ErrnoException).code === 'EEXIST') return null;
+        throw error;
+      });
+      if (opened === null) continue;
+      [written, told] = [0, null];
+      await writeManifest(folder, manifest(null, [])).catch(async (error) => {
+        await opened.abandon();
+        await rm(join(folder, LOG_NAME), { force: true });
+        throw error;
+      });
+      await syncFolder(folder);
+      await syncFolder(missionsDir);
+      return opened;
     }
   };
 
-  const enqueue = (message: LogMessage): void => {
-    if (queue.length === 0) oldest = clock.now();
-    queue.push(message);
-    queuedBytes += message.data.length;
+  const writeEvents = async (to: McapLog): Promise<void> => {
+    while (written < events.length) {
+      const messages = fill(events.length - written, (i) => eventMessage(events[written + i]!));
+      await to.write(messages);
+      written += messages.length;
+    }
   };
 
-  await flush();
+  const writeSamples = async (to: McapLog): Promise<void> => {
+    while (samples.length > 0) {
+      const tellings: Told[] = [];
+      const messages = fill(samples.length, (i) => {
+        const thinned = thinSample(tellings[i - 1] ?? told, samples[i]!.sample);
+        tellings.push(thinned.told);
+        return { channel: READINGS, time: nanoseconds(samples[i]!.wall), data: json(thinned.message) };
+      });
+      const last = samples[messages.length - 1]!;
+      await to.write(messages);
+      samples = samples.slice(samples.indexOf(last) + 1);
+      told = tellings[messages.length - 1]!;
+    }
+  };
+
+  const samplesDue = (): number => (samples[0]?.since ?? Number.POSITIVE_INFINITY) + SAMPLE_WAITS;
+
+  /** Writes what waits: all events, and the samples once they are due. */
+  const write = async (all: boolean): Promise<void> => {
+    if (closed || (trouble !== null && !all && clock.now() < retryAt)) return;
+    try {
+      log ??= await openLog();
+      await writeEvents(log);
+      if (all || clock.now() >= samplesDue()) await writeSamples(log);
+      trouble = null;
+    } catch (error) {
+      trouble = explainDisk(error, folder);
+      retryAt = clock.now() + RETRY_AFTER;
+      samples = samples.slice(-SAMPLES_KEPT);
+      if (log !== null && isLost(error)) {
+        await log.abandon();
+        log = null;
+        part++;
+      }
+    }
+    schedule();
+  };
+
+  /** At most one write at a time, each taking all that has gathered. */
+  const flush = (all: boolean): Promise<unknown> => {
+    busy = busy.then(() => write(all));
+    return busy;
+  };
+
+  const schedule = (): void => {
+    if (cancelTimer !== null || closed) return;
+    const due = trouble === null ? samplesDue() : retryAt;
+    if (due === Number.POSITIVE_INFINITY) return;
+    cancelTimer = clock.after(Math.max(0, due - clock.now()), () => {
+      cancelTimer = null;
+      void flush(false);
+    });
+  };
+
+  const status = (): RecordingStatus => {
+    if (closed) return { state: 'off', text: trouble ?? 'The mission is closed.' };
+    if (trouble === null) return { state: 'recording', folder, since, bytes: log?.bytes() ?? 0 };
+    return { state: 'failed', folder, text: trouble };
+  };
+
+  await flush(false);
   return {
     get folder() {
       return folder;
     },
-    status: (): RecordingStatus =>
-      closed
-        ? { state: 'off', text: 'The mission is closed.' }
-        : trouble === null
-          ? { state: 'recording', folder, since, bytes: log?.bytes() ?? 0 }
-          : { state: 'failed', folder, text: trouble },
+    status,
     append: async (event) => {
-      events.push(event);
-      enqueue(eventMessage(event));
-      return flush();
+      const recordable = recordableEvent(event);
+      if (closed || recordable === null) return false;
+      const index = events.push(recordable) - 1;
+      await flush(false);
+      return written > index;
     },
     sample: (sample) => {
-      enqueue({ channel: 1, time: nanoseconds(clock.wall()), data: json(rounded(sample)) });
-      if (queuedBytes >= CHUNK_BYTES || clock.now() - oldest >= CHUNK_AGE) void flush();
+      if (closed) return;
+      samples.push({ sample, wall: clock.wall(), since: clock.now() });
+      if (samples.length > 2 * SAMPLES_KEPT) samples = samples.slice(-SAMPLES_KEPT);
+      schedule();
     },
-    still: async (fileName, jpeg) => {
-      try {
-        const file = await open(join(folder, 'stills', fileName), 'wx');
-        try {
-          await file.writeFile(jpeg);
-          await file.sync();
-        } finally {
-          await file.close();
-        }
-      } catch (error) {
-        throw new Error(explain(error, folder));
-      }
+    still: async (name, jpeg) => {
+      const mark = `Simulated: ${facts.rig}, ${facts.place}`;
+      const content = facts.simulated ? withComment(jpeg, mark) : jpeg;
+      await writeNewFile(join(folder, 'stills', name), content).catch((error: unknown) => {
+        throw new Error(explainDisk(error, folder));
+      });
+      await syncFolder(join(folder, 'stills'));
     },
     close: async () => {
       if (closed) return;
-      retryAt = Number.NEGATIVE_INFINITY;
-      await flush();
+      await flush(true);
       closed = true;
-      if (log === null) return;
-      await log.end().catch(() => {});
-      const files = await hashFiles(folder).catch(() => []);
-      await writeManifest(folder, manifest(clock.wall().toISOString(), files)).catch(() => {});
+      cancelTimer?.();
+      try {
+        await log?.end();
+        // What could not be written must not be called ended: readers then go by the log.
+        if (trouble !== null) return;
+        await writeManifest(folder, manifest(clock.wall().toISOString(), await hashFiles(folder)));
+      } catch (error) {
+        trouble = explainDisk(error, folder);
+      }
     },
   };
 };
 
+/** The first messages of `count` that fit into one chunk, at least one. */
+const fill = (count: number, message: (i: number) => LogMessage): LogMessage[] => {
+  const messages: LogMessage[] = [];
+  let bytes = 0;
+  while (messages.length < count) {
+    const one = message(messages.length);
+    bytes += one.data.length + MESSAGE_OVERHEAD;
+    if (bytes > CHUNK_BYTES && messages.length > 0) break;
+    messages.push(one);
+  }
+  return messages;
+};
+/** Record header, message header and index entry of a message. */
+const MESSAGE_OVERHEAD = 9 + 22 + 16;
+
+/** The event as it can be read back, or null. JSON has no infinity: the largest number stands for it. */
+const recordableEvent = (event: MissionEvent): MissionEvent | null => {
+  const written = JSON.stringify(event, (_, value: unknown) =>
+    value === Number.POSITIVE_INFINITY || value === Number.NEGATIVE_INFINITY
+      ? Math.sign(value as number) * Number.MAX_VALUE
+      : value,
+  );
+  return missionEventSchema.safeParse(JSON.parse(written)).data ?? null;
+};
+
 const eventMessage = (event: MissionEvent): LogMessage => ({
-  channel: 0,
+  channel: EVENTS,
   time: nanoseconds(new Date(event.time)),
   data: json(event),
 });
 
-const nextChunk = (queue: readonly LogMessage[]): LogMessage[] => {
-  let bytes = 0;
-  const end = queue.findIndex((message) => {
-    bytes += message.data.length + 64;
-    return bytes > CHUNK_BYTES;
-  });
-  return queue.slice(0, end < 0 ? queue.length : Math.max(1, end));
-};
-
-const keepLatest = (queue: readonly LogMessage[]): LogMessage[] => {
-  const samples = queue.filter((message) => message.channel === 1);
-  const kept = new Set(samples.slice(-SAMPLES_KEPT));
-  return queue.filter((message) => message.channel === 0 || kept.has(message));
-};
-
-/** Half a millimetre, a pascal and a hundredth of a newton are below every sensor; more digits only fill the disk. */
-const rounded = (sample: ReadingsSample): ReadingsSample => ({
-  ...sample,
-  at: Number(sample.at.toFixed(3)),
-  values: Object.fromEntries(
-    Object.entries(sample.values).map(([name, value]) => [
-      name,
-      Number(value.toFixed(name.includes('pressure') ? 0 : 4)),
-    ]),
-  ),
-  length: sample.length === null ? null : Number(sample.length.toFixed(4)),
-  ratio: sample.ratio === null ? null : Number(sample.ratio.toPrecision(4)),
-});
-
-const folderName = (started: string, facts: MissionFacts): string => {
-  const slug =
-    facts.place
-      .toLowerCase()
-      .replace(/[^a-z0-9]+/g, '-')
-      .replace(/^-|-$/g, '') || 'mission';
-  const stamp = started.replaceAll(':', '-').replace(/\.\d+/, '');
-  return `${stamp}-${slug}-${facts.mission.slice(0, 6)}${facts.simulated ? '-simulated' : ''}`;
-};
-
 const json = (value: unknown): Uint8Array => new TextEncoder().encode(JSON.stringify(value));
-const nanoseconds = (wall: Date): bigint => BigInt(wall.getTime()) * 1_000_000n;
 
-const isGone = (error: unknown): boolean =>
-  (error as NodeJS.ErrnoException).code === 'ENOENT' ||
-  (error instanceof Error && error.message.includes('replaced by another'));
-
-/** What a person can do about a disk. */
-export const explain = (error: unknown, folder: string): string => {
-  const code = (error as NodeJS.ErrnoException).code;
-  if (code === 'ENOSPC' || code === 'EDQUOT')
-    return `The disk of ${folder} is full. Free some space; recording goes on by itself.`;
-  if (code === 'EACCES' || code === 'EPERM' || code === 'EROFS')
-    return `${folder} may not be written. Choose another missions folder (--missions), or allow writing there.`;
-  if (code === 'ENOENT') return `${folder} is gone. Put the disk back; a new part is begun by itself.`;
-  if (code === 'ENOTDIR')
-    return `${folder} cannot be made: a file is in the way. Choose another missions folder (--missions).`;
-  return `${folder} cannot be written (${error instanceof Error ? error.message : String(error)}). Check the disk.`;
-};
+/** Nanoseconds UTC; a time that is none becomes 0, so that no event is lost for it. */
+const nanoseconds = (wall: Date): bigint => BigInt(wall.getTime() || 0) * 1_000_000n;

@@ -84,8 +84,8 @@ const wayOnward = (state: MissionState, reach: number): MissionState => {
   const ahead = state.branchPoints
     .filter((point) => point.branch === branch.id && point.length >= state.length - AT_BRANCH_POINT)
     .sort((a, b) => a.length - b.length)[0];
-  if (state.length < (ahead?.length ?? branch.reached) - REGROWN)
-    return startWay(state, branch, state.length);
+  const from = Math.max(branch.from, state.length);
+  if (from < (ahead?.length ?? branch.reached) - REGROWN) return startWay(state, branch, from);
   if (ahead === undefined || !(reach > ahead.length + AT_BRANCH_POINT)) return state;
   const lastArm = state.branches.findLast((one) => one.arm?.branchPoint === ahead.id)?.arm?.name;
   return lastArm === undefined ? state : startArm(state, ahead, lastArm);
