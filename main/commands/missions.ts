@@ -1,3 +1,4 @@
+import type { MissionOnDisk } from '../../shared-model/contract/request.ts';
 import { listMissions } from '../record/mission-folder.ts';
 import type { Output } from './check-rig.ts';
 
@@ -15,11 +16,21 @@ export const missions = async (folder: string, json: boolean, output: Output): P
     return 0;
   }
   if (found.length === 0) output.out(`There are no missions in ${folder}.`);
-  for (const one of found) {
-    const state = one.trouble ?? (one.ended === null ? 'not closed' : 'finished');
-    output.out(
-      `${one.started}  ${one.place}${one.simulated ? ' (simulated)' : ''}  ${one.longest.toFixed(2)} m  ${one.branchPoints} branch points  ${one.waypoints} waypoints  ${one.alarms} alarms  ${state}\n  ${one.folder}`,
-    );
-  }
+  for (const one of found) for (const line of linesOf(one)) output.out(line);
   return 0;
 };
+
+const linesOf = (one: MissionOnDisk): string[] => [
+  [
+    one.started || 'time unknown',
+    `${one.place || 'place unknown'}${one.simulated ? ' (simulated)' : ''}`,
+    `${one.longest.toFixed(2)} m`,
+    counted(one.branchPoints, 'branch point'),
+    counted(one.waypoints, 'waypoint'),
+    counted(one.alarms, 'alarm'),
+    one.trouble ?? 'finished',
+  ].join('  '),
+  `  ${one.folder}`,
+];
+
+const counted = (count: number, what: string): string => `${count} ${what}${count === 1 ? '' : 's'}`;

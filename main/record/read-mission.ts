@@ -40,6 +40,7 @@ export const readMissionLog = async (
         if (record.type === 'Channel') content.topics.set(record.id, record.topic);
         else if (record.type === 'Message') content.take(record.channelId, record.data);
         else if (record.type === 'DataEnd') ended = true;
+        else if (record.type === 'Statistics') content.expect(Number(record.messageCount));
       }
     }
   } catch (error) {
@@ -57,6 +58,8 @@ const createContent = (wantSamples: boolean) => {
   const text = new TextDecoder();
   let last: ReadingsSample | null = null;
   let foreign = 0;
+  let taken = 0;
+  let expected: number | null = null;
   const takeEvent = (data: Uint8Array): void => {
     events.push(missionEventSchema.parse(JSON.parse(text.decode(data))));
   };
@@ -67,18 +70,28 @@ const createContent = (wantSamples: boolean) => {
   return {
     topics,
     count: () => events.length,
+    /** What the log itself says of its number of messages. */
+    expect: (count: number): void => {
+      expected = count;
+    },
     take: (channel: number, data: Uint8Array): void => {
       const topic = topics.get(channel);
+      taken++;
       try {
         if (topic === EVENTS_TOPIC) takeEvent(data);
-        else if (topic === READINGS_TOPIC && wantSamples) takeSample(data);
+        else if (topic !== READINGS_TOPIC) foreign++;
+        else if (wantSamples) takeSample(data);
       } catch {
         foreign++;
       }
     },
     result: (trouble: string | null): MissionLogContent => {
       const skipped = foreign === 0 ? null : `${foreign} messages of the log are not understood.`;
-      const troubles = [trouble, skipped].filter((one) => one !== null);
+      const missing =
+        expected === null || expected === taken
+          ? null
+          : `The log holds ${taken} of its ${expected} messages.`;
+      const troubles = [trouble, skipped, missing].filter((one) => one !== null);
       return { events, samples, trouble: troubles.length === 0 ? null : troubles.join(' ') };
     },
   };
