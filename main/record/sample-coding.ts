@@ -40,16 +40,17 @@ interface Resolution {
   readonly band: number;
   readonly decimals: number;
 }
-const LENGTH: Resolution = { band: 0.005, decimals: 3 };
+const LENGTH: Resolution = { band: 0.01, decimals: 3 };
 const SPEED: Resolution = { band: 0.001, decimals: 3 };
 const RESOLUTIONS: readonly (readonly [RegExp, Resolution])[] = [
   [/^body_pressure$/, { band: 50, decimals: 0 }],
-  [/_pressure$/, { band: 100, decimals: 0 }],
+  [/_pressure$/, { band: 200, decimals: 0 }],
   [/tension$/, { band: 0.2, decimals: 2 }],
-  [/(payout|travel)$/, LENGTH],
+  [/payout$/, { band: 0.02, decimals: 3 }],
+  [/travel$/, LENGTH],
   [/roll$/, { band: 0.01, decimals: 3 }],
   [/^camera_[xyz]$/, { band: 0.01, decimals: 3 }],
-  [/^camera_q[wxyz]$/, { band: 0.002, decimals: 4 }],
+  [/^camera_q[wxyz]$/, { band: 0.005, decimals: 3 }],
 ];
 const EXACT: Resolution = { band: 0, decimals: 6 };
 
