@@ -3,7 +3,10 @@ import { createReadStream } from 'node:fs';
 import { readdir, readFile, rename, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import { z } from 'zod';
+import type { MissionEvent } from '../../shared-model/mission/event.ts';
+import { foldMission, type MissionState } from '../../shared-model/mission/mission.ts';
 import { syncFolder, writeNewFile } from './durable-file.ts';
+import type { MissionFacts } from './mission-facts.ts';
 
 export const MANIFEST_NAME = 'manifest.json';
 
@@ -30,6 +33,32 @@ export const manifestSchema = z.object({
   files: z.array(z.object({ name: z.string(), bytes: z.number(), sha256: z.string() })),
 });
 export type Manifest = z.output<typeof manifestSchema>;
+
+/** The manifest of a mission whose events these are; `ended` null while it runs. */
+export const manifestOf = (
+  facts: MissionFacts,
+  started: string,
+  ended: string | null,
+  events: readonly MissionEvent[],
+  files: Manifest['files'],
+): Manifest => ({
+  format: 'foldback-mission',
+  version: 1,
+  ...facts,
+  started,
+  ended,
+  summary: summaryOf(foldMission(events)),
+  files,
+});
+
+/** What a list of missions shows of one; lengths in metres. */
+export const summaryOf = (state: MissionState) => ({
+  length: state.length,
+  longest: state.longest,
+  branchPoints: state.branchPoints.length,
+  waypoints: state.waypoints.length,
+  alarms: state.alarms,
+});
 
 /** Written beside and renamed, so that a reader never meets half of it. */
 export const writeManifest = async (folder: string, manifest: Manifest): Promise<void> => {

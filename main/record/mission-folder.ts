@@ -1,9 +1,9 @@
 import { readdir, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { MissionOnDisk } from '../../shared-model/contract/request.ts';
-import { foldMission, type MissionState } from '../../shared-model/mission/mission.ts';
+import { foldMission } from '../../shared-model/mission/mission.ts';
 import { LOG_NAME } from './log-channels.ts';
-import { type Manifest, readManifest } from './manifest.ts';
+import { type Manifest, readManifest, summaryOf } from './manifest.ts';
 import { readMissionLog } from './read-mission.ts';
 
 /** Every mission folder below `dir`, newest first; what cannot be read is listed with its trouble. */
@@ -60,14 +60,6 @@ const fromLog = async (folder: string, bytes: number, why: Error): Promise<Missi
         : `The manifest cannot be read (${why.message.split('\n')[0]}); this is what the log says.`,
   };
 };
-
-const summaryOf = (state: MissionState) => ({
-  length: state.length,
-  longest: state.longest,
-  branchPoints: state.branchPoints.length,
-  waypoints: state.waypoints.length,
-  alarms: state.alarms,
-});
 
 const missingFiles = (manifest: Manifest, sizes: ReadonlyMap<string, number>): string | null => {
   const wrong = manifest.files.filter(({ name, bytes }) => sizes.get(name) !== bytes);
