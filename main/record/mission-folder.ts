@@ -37,13 +37,13 @@ const describe = async (folder: string): Promise<MissionOnDisk> => {
   if (manifest.ended !== null && manifest.summary !== null)
     return { ...known, ...manifest.summary, trouble: missingFiles(manifest, sizes) };
   // Not closed: the manifest is of the start, the log knows better.
-  const log = await readMissionLog(join(folder, LOG_NAME), { samples: false });
+  const log = await readMissionLog(join(folder, LOG_NAME), { readings: false });
   return { ...known, ...summaryOf(foldMission(log.events)), trouble: log.trouble };
 };
 
 /** Without a manifest the log still tells what the mission was. */
 const fromLog = async (folder: string, bytes: number, why: Error): Promise<MissionOnDisk> => {
-  const log = await readMissionLog(join(folder, LOG_NAME), { samples: false });
+  const log = await readMissionLog(join(folder, LOG_NAME), { readings: false });
   const state = foldMission(log.events);
   return {
     id: state.id ?? '',

@@ -3,13 +3,13 @@ import { join } from 'node:path';
 import { McapStreamReader } from '@mcap/core';
 import { type MissionEvent, missionEventSchema } from '../../shared-model/mission/event.ts';
 import { EVENTS_TOPIC, LOG_NAME, READINGS_TOPIC } from './log-channels.ts';
+import { type LoggedReadings, loggedReadings } from './logged-readings.ts';
 import { type Manifest, readManifest } from './manifest.ts';
-import type { ReadingsSample } from './recorder.ts';
-import { restoreSample, sampleMessageSchema } from './sample-coding.ts';
+import { type SampleMessage, sampleMessageSchema } from './sample-coding.ts';
 
 export interface MissionLogContent {
   readonly events: readonly MissionEvent[];
-  readonly samples: readonly ReadingsSample[];
+  readonly readings: LoggedReadings;
   /** What was met instead of the log's proper end, or null. */
   readonly trouble: string | null;
 }
@@ -28,9 +28,9 @@ export const readMission = async (
  */
 export const readMissionLog = async (
   path: string,
-  want: { readonly samples: boolean } = { samples: true },
+  want: { readonly readings: boolean } = { readings: true },
 ): Promise<MissionLogContent> => {
-  const content = createContent(want.samples);
+  const content = createContent(want.readings);
   const reader = new McapStreamReader();
   let ended = false;
   try {
@@ -51,21 +51,19 @@ export const readMissionLog = async (
 };
 
 /** Gathers messages; one that does not say what its channel promises is left out and counted. */
-const createContent = (wantSamples: boolean) => {
+const createContent = (wantReadings: boolean) => {
   const topics = new Map<number, string>();
   const events: MissionEvent[] = [];
-  const samples: ReadingsSample[] = [];
+  const readings: SampleMessage[] = [];
   const text = new TextDecoder();
-  let last: ReadingsSample | null = null;
   let foreign = 0;
   let taken = 0;
   let expected: number | null = null;
   const takeEvent = (data: Uint8Array): void => {
     events.push(missionEventSchema.parse(JSON.parse(text.decode(data))));
   };
-  const takeSample = (data: Uint8Array): void => {
-    last = restoreSample(last, sampleMessageSchema.parse(JSON.parse(text.decode(data))));
-    samples.push(last);
+  const takeReading = (data: Uint8Array): void => {
+    readings.push(sampleMessageSchema.parse(JSON.parse(text.decode(data))));
   };
   return {
     topics,
@@ -80,7 +78,7 @@ const createContent = (wantSamples: boolean) => {
       try {
         if (topic === EVENTS_TOPIC) takeEvent(data);
         else if (topic !== READINGS_TOPIC) foreign++;
-        else if (wantSamples) takeSample(data);
+        else if (wantReadings) takeReading(data);
       } catch {
         foreign++;
       }
@@ -92,7 +90,11 @@ const createContent = (wantSamples: boolean) => {
           ? null
           : `The log holds ${taken} of its ${expected} messages.`;
       const troubles = [trouble, skipped, missing].filter((one) => one !== null);
-      return { events, samples, trouble: troubles.length === 0 ? null : troubles.join(' ') };
+      return {
+        events,
+        readings: loggedReadings(readings),
+        trouble: troubles.length === 0 ? null : troubles.join(' '),
+      };
     },
   };
 };

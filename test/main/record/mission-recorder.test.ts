@@ -67,8 +67,8 @@ describe('a finished mission', () => {
     const { folder, events } = await shortMission();
     const mission = await readMission(folder);
     expect(mission.events).toEqual(events);
-    expect(mission.samples).toHaveLength(240);
-    expect(mission.samples[239]?.values.tail_payout).toBeCloseTo(2.39, 2);
+    expect(mission.readings.count).toBe(240);
+    expect(mission.readings.sample(239).values.tail_payout).toBeCloseTo(2.39, 2);
     expect(mission.trouble).toBeNull();
   });
 

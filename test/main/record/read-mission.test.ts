@@ -75,7 +75,7 @@ describe('a log that is not whole', () => {
     await writeFile(join(dir, 'mission.mcap'), 'no log');
     for (const name of ['mission.mcap', 'missing.mcap']) {
       const log = await readMissionLog(join(dir, name));
-      expect(log).toMatchObject({ events: [], samples: [] });
+      expect(log).toMatchObject({ events: [], readings: { count: 0 } });
       expect(log.trouble).toMatch(/\S/);
     }
   });
