@@ -97,10 +97,12 @@ export const attachConsole = (
 /** The console as a child process of the browser shell; TypeScript runs there as it does here. */
 export const forkConsole = (options: ConsoleOptions): Promise<ConsoleProcess> => {
   const entry = fileURLToPath(new URL('../console/process.mjs', import.meta.url));
-  const child = fork(entry, { stdio: ['ignore', 'inherit', 'inherit', 'ipc'], detached: false });
+  // Standard output is the shell's alone: it carries the address.
+  const child = fork(entry, { stdio: ['ignore', 2, 2, 'ipc'], execArgv: [] });
+  child.on('error', () => child.kill('SIGKILL'));
   const channel: Channel<ToConsole, FromConsole> = {
     send: (message) => {
-      if (child.connected) child.send(message);
+      if (child.connected) child.send(message, () => {});
     },
     onMessage: (listener) => child.on('message', (message) => listener(message as FromConsole)),
     onGone: (listener) => child.on('exit', listener),

@@ -1,8 +1,8 @@
 import { randomBytes, timingSafeEqual } from 'node:crypto';
 import type { IncomingMessage } from 'node:http';
 
-const COOKIE = 'foldback_session';
 const SESSIONS_MAX = 16;
+const KEYS_MAX = 16;
 
 /** Keys that each open one session, once, and the sessions that were opened. */
 export interface Sessions {
@@ -13,13 +13,16 @@ export interface Sessions {
   isOpen(request: IncomingMessage): boolean;
 }
 
-export const createSessions = (): Sessions => {
+/** @param port distinguishes the consoles on one computer: a browser sends cookies to every port of an address. */
+export const createSessions = (port: number): Sessions => {
+  const name = `foldback_session_${port}`;
   const keys: Buffer[] = [];
   const sessions: Buffer[] = [];
   return {
     issueKey: () => {
       const key = randomBytes(24).toString('base64url');
       keys.push(Buffer.from(key));
+      if (keys.length > KEYS_MAX) keys.shift();
       return key;
     },
     exchange: (key) => {
@@ -30,19 +33,19 @@ export const createSessions = (): Sessions => {
       const token = randomBytes(24).toString('base64url');
       sessions.push(Buffer.from(token));
       if (sessions.length > SESSIONS_MAX) sessions.shift();
-      return `${COOKIE}=${token}; HttpOnly; SameSite=Strict; Path=/`;
+      return `${name}=${token}; HttpOnly; SameSite=Strict; Path=/`;
     },
     isOpen: (request) => {
-      const token = cookieOf(request);
+      const token = cookieOf(request, name);
       return token !== null && sessions.some((one) => same(one, Buffer.from(token)));
     },
   };
 };
 
-const cookieOf = (request: IncomingMessage): string | null => {
+const cookieOf = (request: IncomingMessage, wanted: string): string | null => {
   for (const part of (request.headers.cookie ?? '').split(';')) {
     const [name, value] = part.trim().split('=');
-    if (name === COOKIE && value !== undefined) return value;
+    if (name === wanted && value !== undefined) return value;
   }
   return null;
 };
