@@ -1,8 +1,8 @@
 import { openAppWindow } from './shells/app-window.ts';
 import { type BrowserShell, listen, serveConsole } from './shells/browser.ts';
+import { ensureRenderer } from './shells/builds.ts';
 import { type ConsoleProcess, forkConsole } from './shells/console-process.ts';
 import { runElectron, whyNotElectron } from './shells/electron-launch.ts';
-import { ensureRenderer } from './shells/renderer-build.ts';
 import { consoleOptions, refusedOptions, type StartOptions, startCommand } from './start-options.ts';
 
 const say = (line: string): void => void process.stdout.write(`${line}\n`);

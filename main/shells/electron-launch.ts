@@ -2,11 +2,8 @@ import { spawn } from 'node:child_process';
 import { existsSync, readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { dirname, join } from 'node:path';
-import { fileURLToPath } from 'node:url';
 import type { ConsoleOptions } from '../console/start.ts';
-import { ensureRenderer } from './renderer-build.ts';
-
-const PROJECT = fileURLToPath(new URL('../..', import.meta.url));
+import { ensureElectronBundles, ensureRenderer } from './builds.ts';
 
 /** Path of Electron's binary, or null: its npm package comes without one and fetches it on first use. */
 export const electronBinary = (): string | null => {
@@ -31,19 +28,26 @@ export const whyNotElectron = (): string | null => {
 
 /** Builds what Electron needs and runs it until its window is closed; returns its exit code. */
 export const runElectron = async (options: ConsoleOptions): Promise<number> => {
-  await ensureRenderer();
-  const { build } = await import('vite');
-  await build({
-    root: PROJECT,
-    configFile: join(PROJECT, 'vite.config.ts'),
-    mode: 'main',
-    logLevel: 'error',
-  });
   const binary = electronBinary();
-  if (binary === null) return 1;
-  const child = spawn(binary, [join(PROJECT, 'dist', 'main', 'electron.js')], {
+  if (binary === null) throw new Error("Electron's binary is not on this computer.");
+  await ensureRenderer();
+  const folder = await ensureElectronBundles();
+  // Set by some editors' terminals, it would turn Electron into plain Node.
+  const { ELECTRON_RUN_AS_NODE: _, ...env } = process.env;
+  const child = spawn(binary, [join(folder, 'electron.js'), ...asArguments(options)], {
     stdio: 'inherit',
-    env: { ...process.env, FOLDBACK_OPTIONS: JSON.stringify(options) },
+    env,
   });
-  return new Promise((resolve) => child.on('exit', (code) => resolve(code ?? 1)));
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const)
+    process.on(signal, () => child.kill('SIGTERM'));
+  return new Promise((resolve, reject) => {
+    child.on('error', reject);
+    child.on('exit', (code) => resolve(code ?? 1));
+  });
 };
+
+const asArguments = ({ rigFile, serialPath, missionsDir, seed }: ConsoleOptions): string[] => [
+  ...(rigFile === null ? [] : ['--rig', rigFile]),
+  ...(serialPath === null ? [] : ['--serial', serialPath]),
+  ...['--missions', missionsDir, '--seed', String(seed)],
+];
