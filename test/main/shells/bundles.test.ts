@@ -1,6 +1,6 @@
 import { fork } from 'node:child_process';
 import { mkdir, mkdtemp, readdir, readFile, rm } from 'node:fs/promises';
-import { join } from 'node:path';
+import { basename, dirname, join } from 'node:path';
 import { build } from 'vite';
 import { afterAll, beforeAll, describe, expect, it, onTestFinished } from 'vitest';
 import type { FromConsole, ToConsole } from '../../../main/console/channel.ts';
@@ -33,6 +33,12 @@ const modulesOf = async (file: string): Promise<string[]> =>
 describe('the bundles for Electron', () => {
   it('bring a preload that a sandbox accepts: one CommonJS file that needs Electron alone', async () => {
     expect(await modulesOf('preload.cjs')).toEqual(['electron']);
+  });
+
+  it('hold what the installed program starts with', async () => {
+    const { main } = JSON.parse(await readFile(join(PROJECT, 'package.json'), 'utf8')) as { main: string };
+    expect(dirname(main)).toBe('dist/main');
+    expect(await readdir(folder)).toContain(basename(main));
   });
 
   it('leave only Electron, serialport and Node outside', async () => {
