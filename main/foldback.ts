@@ -7,8 +7,15 @@ import { checkRig, type Output } from './commands/check-rig.ts';
 import { missions } from './commands/missions.ts';
 import { outlookForRig, runOutlook } from './commands/outlook.ts';
 import { simulate } from './commands/simulate.ts';
+import { onParentGone } from './parent-watch.ts';
 import { BUILT_IN_RIG_FILE, loadRigFile } from './rig/rig-file.ts';
 import { FAULTS, type Fault } from './simulator/built-in-rig.ts';
+
+// `foldback check-rig | head` has read enough: that is no error.
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code !== 'EPIPE') throw error;
+  process.exit(0);
+});
 
 const output: Output = {
   out: (line) => process.stdout.write(`${line}\n`),
@@ -120,6 +127,7 @@ program
     }) => {
       const stop = new AbortController();
       for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, () => stop.abort());
+      onParentGone(() => stop.abort());
       process.exitCode = await simulate(
         { port: options.port, rigFile: options.rig, seed: options.seed, faults: options.fault },
         output,

@@ -1,9 +1,13 @@
+import { onParentGone } from './parent-watch.ts';
 import { openAppWindow } from './shells/app-window.ts';
 import { type BrowserShell, listen, serveConsole } from './shells/browser.ts';
 import { ensureRenderer } from './shells/builds.ts';
 import { type ConsoleProcess, forkConsole } from './shells/console-process.ts';
 import { runElectron, whyNotElectron } from './shells/electron-launch.ts';
 import { consoleOptions, refusedOptions, type StartOptions, startCommand } from './start-options.ts';
+
+// Whoever started this may stop reading; that must not end it.
+for (const stream of [process.stdout, process.stderr]) stream.on('error', () => {});
 
 const say = (line: string): void => void process.stdout.write(`${line}\n`);
 
@@ -34,6 +38,7 @@ const runBrowserShell = async (options: StartOptions, instead: string | null): P
   const shell = serveConsole(server, console_, { rendererDir });
   const end = endOnce(console_, shell);
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, () => void end(0));
+  onParentGone(() => void end(0));
   console_.onExit(() => {
     process.stderr.write(
       'The console process ended unexpectedly. The base stops by its own watchdog. Start Foldback again.\n',

@@ -68,6 +68,8 @@ const serve = (channel: Channel<FromConsole, ToConsole>): void => {
     else if (message.kind === 'leave') console_.leave(message.client);
     else void answer(console_, message.id, message.client, message.request);
   });
+  // The terminal may be closed; that must not end what holds the machine.
+  process.stderr.on('error', () => {});
   // A signal to the whole group reaches this process too; only the shell decides when it ends.
   for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) process.on(signal, () => {});
 };

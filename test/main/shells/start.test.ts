@@ -20,10 +20,15 @@ interface Started {
   readonly ended: Promise<number | null>;
 }
 
-const start = async (...options: string[]): Promise<Started> => {
+const start = (...options: string[]): Promise<Started> => startWith([process.execPath, START], options);
+
+const startWith = async (
+  [program = '', ...before]: readonly string[],
+  options: string[],
+): Promise<Started> => {
   const folder = await mkdtemp(join(tmpdir(), 'foldback-start-'));
   const env = { ...process.env, DISPLAY: '', WAYLAND_DISPLAY: '' };
-  const child = spawn(process.execPath, [START, '--missions', folder, ...options], {
+  const child = spawn(program, [...before, '--missions', folder, ...options], {
     env,
     stdio: ['ignore', 'pipe', 'pipe'],
   });
@@ -48,8 +53,15 @@ const start = async (...options: string[]): Promise<Started> => {
   };
 };
 
-const printed = (one: Started, line: RegExp): Promise<void> =>
-  expect.poll(() => one.out().some((text) => line.test(text)), { timeout: 50_000 }).toBe(true);
+const printed = (one: Started, line: RegExp): Promise<void> => {
+  const ended = one.ended.then((code) => {
+    throw new Error(`npm start ended with ${code}: ${one.error()}`);
+  });
+  const appeared = expect
+    .poll(() => one.out().some((text) => line.test(text)), { timeout: 50_000 })
+    .toBe(true);
+  return Promise.race([appeared, ended]);
+};
 
 const theMission = async (folder: string): Promise<{ folder: string; manifest: Manifest }> => {
   const [name = ''] = await readdir(folder);
@@ -94,6 +106,27 @@ describe('npm start', () => {
       .poll(async () => (await theMission(one.folder)).manifest.ended, { timeout: 20_000 })
       .not.toBe(null);
     expect((await kinds(one.folder)).at(-1)).toBe('mission-ended');
+  });
+
+  // npm hands a signal to its shell, which ends without telling the console.
+  it('closes the log when only npm itself is told to end', async () => {
+    const one = await startWith(['npm', 'start', '--silent', '--'], ['--shell', 'browser']);
+    await printed(one, ADDRESS);
+    one.child.kill('SIGTERM');
+    await expect
+      .poll(async () => (await theMission(one.folder)).manifest.ended, { timeout: 20_000 })
+      .not.toBe(null);
+  });
+
+  it('runs on when nobody reads what it prints any more', async () => {
+    const one = await start('--shell', 'browser');
+    await printed(one, ADDRESS);
+    one.child.stdout?.destroy();
+    one.child.stderr?.destroy();
+    const [, port = ''] = ADDRESS.exec(one.out()[0] ?? '') ?? [];
+    expect((await fetch(`http://127.0.0.1:${port}/`)).status).toBe(200);
+    one.child.kill('SIGTERM');
+    await expect.poll(() => one.child.exitCode).toBe(0);
   });
 
   it('says that a port is in use, and records nothing', async () => {
