@@ -4,6 +4,7 @@ import { type BrowserShell, listen, serveConsole } from './shells/browser.ts';
 import { ensureRenderer } from './shells/builds.ts';
 import { type ConsoleProcess, forkConsole } from './shells/console-process.ts';
 import { runElectron, whyNotElectron } from './shells/electron-launch.ts';
+import { isLoopback } from './shells/own-address.ts';
 import { consoleOptions, refusedOptions, type StartOptions, startCommand } from './start-options.ts';
 
 // Whoever started this may stop reading; that must not end it.
@@ -45,6 +46,7 @@ const runBrowserShell = async (options: StartOptions, instead: string | null): P
     );
     void end(1);
   });
+  if (!isLoopback(options.listen)) process.stderr.write(`${OPEN_TO_OTHERS}\n`);
   if (instead !== null) say(`Shell: browser, because ${instead}`);
   say(`Foldback console: ${shell.url()}`);
   offerMoreAddresses(shell);
@@ -54,6 +56,9 @@ const runBrowserShell = async (options: StartOptions, instead: string | null): P
     say(opened);
   }
 };
+
+const OPEN_TO_OTHERS =
+  'Others on this network can reach the console. Nothing is encrypted: whoever listens there sees the pictures and can take a session over.';
 
 const endOnce = (console_: ConsoleProcess, shell: BrowserShell): ((code: number) => Promise<void>) => {
   let ending = false;

@@ -65,8 +65,8 @@ const buildInto = async (outDir: string, mode: string): Promise<void> => {
   });
 };
 
-/** Two starts at once: each moves a whole build, the later one finds the place taken and leaves it so. */
-const putInPlace = async (fresh: string, place: string): Promise<void> => {
+/** Two starts at once: each moves a whole build, and one that finds the place taken anew leaves it so. */
+export const putInPlace = async (fresh: string, place: string): Promise<void> => {
   const old = `${fresh}-old`;
   await rename(place, old).catch(unless('ENOENT'));
   await rename(fresh, place).catch(unless('ENOTEMPTY', 'EEXIST', 'EPERM'));

@@ -4,17 +4,29 @@ import type { Channel, FromConsole, ToConsole } from '../console/channel.ts';
 import type { ConsoleOptions } from '../console/start.ts';
 import { attachConsole, type ConsoleProcess } from './console-process.ts';
 
-/** The console as a process of its own under Electron; `folder` is where the bundles lie. */
-export const forkUtilityConsole = (options: ConsoleOptions, folder: string): Promise<ConsoleProcess> => {
+/**
+ * The console as a process of its own under Electron; `folder` is where the bundles lie. Rejects with the reason when
+ * it cannot start.
+ */
+export const forkUtilityConsole = async (
+  options: ConsoleOptions,
+  folder: string,
+): Promise<ConsoleProcess> => {
   const child = utilityProcess.fork(join(folder, 'console-process.js'), [], {
     serviceName: 'Foldback console',
     stdio: 'inherit',
   });
+  await spawned(child);
   return attachConsole(channelTo(child), () => void child.kill(), options);
 };
 
+const spawned = (child: UtilityProcess): Promise<void> =>
+  new Promise((resolve, reject) => {
+    child.once('spawn', resolve);
+    child.once('exit', () => reject(new Error('The console process could not be started.')));
+  });
+
 const channelTo = (child: UtilityProcess): Channel<ToConsole, FromConsole> => {
-  // Messages sent before the process has begun are kept by Electron and delivered then.
   let running = true;
   child.on('exit', () => {
     running = false;

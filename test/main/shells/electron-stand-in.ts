@@ -155,10 +155,15 @@ export const protocol = {
     protocolHandlers.set(scheme, handler),
 };
 export const forked: { path: string; process: UtilityProcess }[] = [];
+let canFork = true;
+export const refuseToFork = (): void => {
+  canFork = false;
+};
 export const utilityProcess = {
   fork: (path: string): UtilityProcess => {
     const process = new UtilityProcess();
     forked.push({ path, process });
+    queueMicrotask(() => process.emit(canFork ? 'spawn' : 'exit'));
     return process;
   },
 };

@@ -169,6 +169,14 @@ describe('what the page asks of the console', () => {
 });
 
 describe('the console process', () => {
+  it('that cannot be started is said so, and no window opens', async () => {
+    electron.refuseToFork();
+    await import('../../../main/shells/electron.ts');
+    await vi.waitFor(() => expect(electron.app.exitCodes).toEqual([1]));
+    expect(electron.errorBoxes[0]?.[1]).toContain('could not be started');
+    expect(electron.BrowserWindow.all).toEqual([]);
+  });
+
   it('is closed before Electron ends', async () => {
     const { console_ } = await joined();
     electron.app.emit('window-all-closed');
