@@ -41,7 +41,8 @@ const startWith = async (
   });
   const ended = once(child, 'close').then(([code]) => code as number | null);
   onTestFinished(async () => {
-    child.kill('SIGKILL');
+    child.kill('SIGTERM');
+    await ended;
     await rm(folder, { recursive: true, force: true, maxRetries: 5 });
   });
   return {
