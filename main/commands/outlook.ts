@@ -37,8 +37,10 @@ export const outlookForRig = (rig: RigDescription, plan: RigPlan) => {
     body: { radius: body.radius, wall: body.wall, E: body.E, G: body.G },
     pressure: plan.pressure,
     inversion: {
-      ...body.inversion,
-      rateCoefficient: Number.isFinite(rateCoefficient) ? rateCoefficient : null,
+      yield: body.inversion.yield,
+      ...(Number.isFinite(rateCoefficient)
+        ? { rateCoefficient, rateExponent: body.inversion.rateExponent }
+        : {}),
     },
     tipSpeed: rig.limits.tipSpeed,
     friction: body.friction,

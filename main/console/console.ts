@@ -79,7 +79,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const { rig, link, recorder, clock } = parts;
   const mission = createMissionLog(clock, recorder, (event) => broadcast({ kind: 'event', event }));
   const clients = new Set<string>();
-  const judge = createWayBackJudge();
+  const judge = createWayBackJudge(rig);
   const described = new Set(Object.keys(rig.reads));
   const hasRetractorDrive = rig.writes.tip_retractor_speed_setpoint !== undefined;
   let driver: string | null = null;
@@ -143,7 +143,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     noteRetractor(attached);
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
     bodyChanged ||= estimate.changedFrom < estimate.path.count;
-    followShape(judge, rig, estimate);
+    followShape(judge, estimate);
     const around = { estimate, readings, retractorAttached: attached, now };
     const wayBack = judgeTo(judge, rig, around, 0);
     const wish = wantedNow(now);

@@ -1,15 +1,15 @@
 import type { OutlookLine } from '../../shared-model/contract/frame.ts';
 import { goodValue, type Readings } from '../../shared-model/contract/reading.ts';
-import { type Arms, createArms, updateArms } from '../../shared-model/retraction/arms.ts';
+import { type Arms, createArms, type Holding, updateArms } from '../../shared-model/retraction/arms.ts';
 import {
   createJudgeSpace,
   defaultMargin,
   type JudgeSpace,
   judgeWayBack,
-  type WayBackInput,
 } from '../../shared-model/retraction/judge.ts';
 import { findRemedies } from '../../shared-model/retraction/remedies.ts';
 import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
+import type { WayBackInput } from '../../shared-model/retraction/way-back-input.ts';
 import type { Estimate } from '../../shared-model/shape/estimate.ts';
 import type { RigDescription } from '../rig/signal.ts';
 
@@ -27,12 +27,22 @@ export interface WayBackJudge {
   remediesAt: number;
 }
 
-export const createWayBackJudge = (): WayBackJudge => ({
-  arms: createArms(256),
+export const createWayBackJudge = (rig: RigDescription): WayBackJudge => ({
+  arms: createArms(256, holdingOf(rig)),
   space: createJudgeSpace(),
   targetSpace: createJudgeSpace(),
   remedies: [],
   remediesAt: Number.NEGATIVE_INFINITY,
+});
+
+const holdingOf = ({ body, place }: RigDescription): Holding => ({
+  setback: body.guideSetback,
+  gravity: {
+    weight: body.weight,
+    payload: body.payload,
+    direction: place.gravity,
+    supported: body.onGround ? Number.POSITIVE_INFINITY : 0,
+  },
 });
 
 export interface Surroundings {
@@ -64,8 +74,8 @@ export const judgeTo = (
 };
 
 /** To be called once a tick, before judging: only stations that changed are worked out again. */
-export const followShape = (judge: WayBackJudge, rig: RigDescription, estimate: Estimate): void =>
-  updateArms(judge.arms, estimate.path, estimate.changedFrom, rig.body.guideSetback);
+export const followShape = (judge: WayBackJudge, estimate: Estimate): void =>
+  updateArms(judge.arms, estimate.path, estimate.changedFrom);
 
 const inputOf = (
   judge: WayBackJudge,
@@ -86,12 +96,6 @@ const inputOf = (
     // Faster takes more tension; judged at the fastest that may be asked for.
     tipSpeed: rig.limits.tipSpeed,
     target,
-    gravity: {
-      weight: rig.body.weight,
-      payload: rig.body.payload,
-      direction: rig.place.gravity,
-      supported: rig.body.onGround ? Number.POSITIVE_INFINITY : 0,
-    },
     retractor: around.retractorAttached ? { heldTension: heldTension(readings, now, age) } : null,
   };
 };

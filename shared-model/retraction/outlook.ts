@@ -1,23 +1,26 @@
-import type { BodyDescription } from '../body/body.ts';
+import type { Body, BodyDescription } from '../body/body.ts';
 import { capacity } from '../mechanics/capacity.ts';
-import { columnLoad } from '../mechanics/column.ts';
-import { type GravityLoad, gravityMoment } from '../mechanics/gravity-moment.ts';
+import { columnLoadOf, setbackRoot } from '../mechanics/column.ts';
 import { amplifiedLength, capstan, inversionTension } from '../mechanics/inversion.ts';
 import { area, bendingStiffness, shearStiffness } from '../mechanics/section.ts';
 import type { SampledShape } from '../shape/sampled-shape.ts';
+import type { Vec3 } from '../shape/vector.ts';
 import type { Arms } from './arms.ts';
 import type { ForcesAt } from './verdict.ts';
 
+/** What of a body the forces of a pull depend on. */
+export type PulledBody = Body &
+  Pick<BodyDescription, 'inversion' | 'friction' | 'tailWeight' | 'collapseFraction' | 'eccentricityFloor'>;
+
 /** What a pull is judged under. SI. */
 export interface PullConditions {
-  readonly body: BodyDescription;
+  readonly body: PulledBody;
   /** Body pressure, gauge [Pa]. */
   readonly pressure: number;
   /** Speed at which the tip comes back [m/s]. */
   readonly tipSpeed: number;
   /** λ/2 − shape length, ≥ 0: counts as straight tail at the base and as column length [m]. */
   readonly excess: number;
-  readonly gravity: GravityLoad;
 }
 
 /** Forces at every body length, structure of arrays over the stations of the shape; forces in N, arms in m. */
@@ -39,7 +42,7 @@ export const createOutlook = (room: number): Outlook => ({
   tipTension: Number.NaN,
 });
 
-/** Fills `out` for the body lengths of `shape` from station `first` to the tip; O(n) where ground carries the body. */
+/** Fills `out` for the body lengths of `shape` from station `first` to the tip; O(n). */
 export const computeOutlook = (
   shape: SampledShape,
   arms: Arms,
@@ -55,8 +58,8 @@ export const computeOutlook = (
   const S = shearStiffness(body, pull.pressure);
   const drag = body.friction * body.tailWeight;
   const tipTension = inversionTension(A, pull.pressure, body.inversion, pull.tipSpeed);
-  const { direction, supported } = pull.gravity;
   let dragged = pull.excess;
+  let u = Math.PI;
   for (let j = 0; j < shape.count; j++) {
     const s = shape.s[j]!;
     if (j > 0) {
@@ -64,37 +67,53 @@ export const computeOutlook = (
       dragged += amplifiedLength(body.friction, shape.bend[j - 1]!, shape.bend[j]!, s - before);
     }
     if (j < first) continue;
-    const below =
-      direction[0] * shape.position[3 * j]! +
-      direction[1] * shape.position[3 * j + 1]! +
-      direction[2] * shape.position[3 * j + 2]!;
-    // Weight lifted counts when the base is above the tip; no credit the other way.
-    const lifted = below > 0 ? body.tailWeight * below : below <= 0 ? 0 : Number.NaN;
+    const lifted = body.tailWeight * depthBelowBase(shape, j, arms.holding.gravity.direction);
     const tension = tipTension * capstan(body.friction, shape.bend[j]!) + drag * dragged + lifted;
-    const F_c = columnLoad(EI, S, s + pull.excess, body.guideSetback);
+    const L = s + pull.excess;
+    u = setbackRoot(EI, S, L, arms.holding.setback, u);
+    const F_c = columnLoadOf(u, EI, S, L);
     const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, body.eccentricityFloor * body.radius);
-    const M_g = supported >= s ? 0 : gravityMoment(shape, j, pull.gravity);
     out.baseTension[j] = tension;
     out.columnLoad[j] = F_c;
     // A body of no length cannot buckle: its wall is all clamp.
     out.capacity[j] =
-      s + pull.excess === 0 ? PA : capacity(F_c, PA, body.radius, arm, M_g, body.collapseFraction);
-    out.ratio[j] = s + pull.excess === 0 ? Number.POSITIVE_INFINITY : out.capacity[j]! / tension;
+      L === 0 ? PA : capacity(F_c, PA, body.radius, arm, arms.moment[j]!, body.collapseFraction);
+    out.ratio[j] = L === 0 ? Number.POSITIVE_INFINITY : out.capacity[j]! / tension;
   }
   out.count = shape.count;
   out.tipTension = tipTension;
   return out;
 };
 
-/** Station of the smallest ratio among body lengths from `target` [m] to the tip; a NaN ratio is the worst there is. */
+/** How far a station lies below the base [m]; above it counts as zero: what the tail's weight helps is not relied on. */
+const depthBelowBase = (shape: SampledShape, j: number, down: Vec3): number => {
+  const { position: p } = shape;
+  return Math.max(0, down[0] * p[3 * j]! + down[1] * p[3 * j + 1]! + down[2] * p[3 * j + 2]!);
+};
+
+/**
+ * Station of the smallest ratio among body lengths from the tip to `target` [m], the first at or below it included; a NaN
+ * ratio is the worst there is.
+ */
 export const worstStation = (shape: SampledShape, outlook: Outlook, target: number): number => {
   let worst = outlook.count - 1;
-  for (let j = outlook.count - 1; j >= 0 && shape.s[j]! >= target; j--) {
+  for (let j = worst; j >= 0; j--) {
     const ratio = outlook.ratio[j]!;
     if (Number.isNaN(ratio)) return j;
     if (ratio < outlook.ratio[worst]!) worst = j;
+    if (shape.s[j]! <= target) break;
   }
   return worst;
+};
+
+/** Smallest capacity [N] among the same body lengths; NaN if one of them is. */
+export const leastCapacity = (shape: SampledShape, outlook: Outlook, target: number): number => {
+  let least = Number.POSITIVE_INFINITY;
+  for (let j = outlook.count - 1; j >= 0; j--) {
+    least = Math.min(least, outlook.capacity[j]!);
+    if (shape.s[j]! <= target) break;
+  }
+  return least;
 };
 
 export const forcesAt = (shape: SampledShape, arms: Arms, outlook: Outlook, station: number): ForcesAt => ({

@@ -39,6 +39,35 @@ export const sampleSegments = (
   return shape;
 };
 
+/** The first `length` metres of a chain of arcs. */
+export const cutSegments = (segments: readonly Segment[], length: number): Segment[] => {
+  const cut: Segment[] = [];
+  let left = length;
+  for (const one of segments) {
+    if (!(left > 0)) break;
+    cut.push({ ...one, length: Math.min(one.length, left) });
+    left -= one.length;
+  }
+  return cut;
+};
+
+/** A sampled body of arcs cut at `length` [m]: its stations below that, and one where its tip then is. */
+export const cutShape = (shape: SampledShape, segments: readonly Segment[], length: number): SampledShape => {
+  let kept = 1;
+  while (kept < shape.count && shape.s[kept]! < length) kept++;
+  const cut = allocateShape(length > 0 ? kept + 1 : 1);
+  cut.s.set(shape.s.subarray(0, kept));
+  cut.bend.set(shape.bend.subarray(0, kept));
+  cut.position.set(shape.position.subarray(0, 3 * kept));
+  cut.tangent.set(shape.tangent.subarray(0, 3 * kept));
+  if (!(length > 0)) return cut;
+  const last = cutSegments(segments, length).at(-1);
+  const curvature = Math.abs(last?.curvature ?? 0);
+  const bend = shape.bend[kept - 1]! + curvature * (length - shape.s[kept - 1]!);
+  writeStation(cut, kept, tipPose(cutSegments(segments, length)), length, bend);
+  return cut;
+};
+
 /** Room for `count` stations. */
 export const allocateShape = (count: number): SampledShape => ({
   count,
