@@ -1,0 +1,204 @@
+import { useEffect, useRef } from 'react';
+import UPlot from 'uplot';
+import 'uplot/dist/uPlot.min.css';
+import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
+import type { ConsoleState } from '../store/console-store.ts';
+import { consoleStore, useConsole } from '../store/console-store.ts';
+
+/** For every body length back to the base: the tension that inverts, with margin, and the tension that buckles. */
+export const OutlookChart = () => {
+  const host = useRef<HTMLDivElement>(null);
+  useEffect(() => {
+    const element = host.current;
+    return element === null ? undefined : mountChart(element);
+  }, []);
+  const summary = useConsole(summaryOf);
+  return (
+    <figure className="outlook" aria-label="Outlook for the way back">
+      <div ref={host} className="outlook-plot" />
+      <figcaption className="visually-hidden">{summary}</figcaption>
+    </figure>
+  );
+};
+
+const summaryOf = ({ outlook, frame }: ConsoleState): string => {
+  const last = (outlook?.length.length ?? 0) - 1;
+  if (outlook === null || last < 0) return 'No body is out.';
+  return `At ${outlook.length[last]!.toFixed(1)} m inverting takes ${outlook.invert[last]!.toFixed(0)} N and ${outlook.buckle[last]!.toFixed(0)} N would buckle the body; verdict ${frame?.wayBack.kind ?? 'unknown'}.`;
+};
+
+const mountChart = (element: HTMLElement): (() => void) => {
+  let chart: UPlot | null = null;
+  let drawn: ConsoleState['outlook'] = null;
+  const build = (): void => {
+    chart?.destroy();
+    chart = new UPlot(optionsFor(element), dataOf(consoleStore.getState()), element);
+  };
+  build();
+  const resize = new ResizeObserver(() => chart?.setSize(sizeOf(element)));
+  resize.observe(element);
+  // Axes are drawn in theme colours, so a change of theme draws them anew.
+  const themes = new MutationObserver(build);
+  themes.observe(document.documentElement, { attributes: true, attributeFilter: ['data-theme'] });
+  const unsubscribe = consoleStore.subscribe((state) => {
+    if (state.outlook === drawn) return;
+    drawn = state.outlook;
+    chart?.setData(dataOf(state));
+  });
+  return () => {
+    unsubscribe();
+    resize.disconnect();
+    themes.disconnect();
+    chart?.destroy();
+  };
+};
+
+/** The smallest force a logarithmic axis shows [N]. */
+const FLOOR = 0.1;
+
+const dataOf = ({ outlook }: ConsoleState): UPlot.AlignedData => {
+  if (outlook === null || outlook.length.length === 0)
+    return [
+      [0, 1],
+      [null, null],
+      [null, null],
+    ];
+  return [
+    [...outlook.length],
+    outlook.invert.map((force) => Math.max(FLOOR, force * outlook.margin)),
+    outlook.buckle.map((force) => Math.max(FLOOR, force)),
+  ];
+};
+
+const sizeOf = (element: HTMLElement) => ({
+  width: Math.max(160, element.clientWidth),
+  height: Math.max(90, element.clientHeight),
+});
+
+const optionsFor = (element: HTMLElement): UPlot.Options => {
+  const style = getComputedStyle(document.documentElement);
+  const colour = (name: string) => style.getPropertyValue(name).trim();
+  const axis = {
+    stroke: colour('--ink-soft'),
+    grid: { stroke: colour('--line'), width: 1 },
+    ticks: { stroke: colour('--line'), width: 1 },
+    font: '12px sans-serif',
+  };
+  return {
+    ...sizeOf(element),
+    legend: { show: false },
+    cursor: { show: false },
+    padding: [18, 12, 0, 0],
+    scales: {
+      x: { time: false, range: (_, low, high) => [0, Math.max(1, high, low)] },
+      y: { distr: 3, range: (_, low, high) => [Math.min(1, low ?? 1), Math.max(300, high ?? 1)] },
+    },
+    axes: [
+      { ...axis, size: 30, values: (_, ticks) => ticks.map((tick) => `${tick} m`) },
+      {
+        ...axis,
+        size: 52,
+        values: (_, ticks) =>
+          ticks.map((tick) => (tick !== null && Number.isInteger(Math.log10(tick)) ? `${tick} N` : '')),
+      },
+    ],
+    series: [
+      {},
+      { stroke: colour('--ink'), width: 2, points: { show: false } },
+      { stroke: colour('--ink'), width: 2, dash: [7, 4], points: { show: false } },
+    ],
+    hooks: { drawAxes: [shadeRefused], draw: [drawMarks, drawLegend, drawTension] },
+  };
+};
+
+/** Hatches the lengths at which a pull is refused, before anyone tries. */
+const shadeRefused = (chart: UPlot): void => {
+  const [lengths, needed, bears] = chart.data as [number[], (number | null)[], (number | null)[]];
+  const { ctx, bbox } = chart;
+  ctx.save();
+  ctx.fillStyle = inkOf('--hatch');
+  lengths.forEach((length, i) => {
+    if (i === 0 || needed[i] == null || bears[i] == null || bears[i]! >= needed[i]!) return;
+    const from = chart.valToPos(lengths[i - 1]!, 'x', true);
+    ctx.fillRect(from, bbox.top, chart.valToPos(length, 'x', true) - from + 1, bbox.height);
+  });
+  ctx.restore();
+};
+
+const drawMarks = (chart: UPlot): void => {
+  const { mission, frame } = consoleStore.getState();
+  const { ctx, bbox } = chart;
+  ctx.save();
+  ctx.font = `${12 * devicePixelRatio}px sans-serif`;
+  ctx.fillStyle = inkOf('--ink');
+  ctx.strokeStyle = inkOf('--ink-soft');
+  ctx.setLineDash([3, 3]);
+  let busyUntil = Number.NEGATIVE_INFINITY;
+  for (const target of targetsOnBody(mission, frame?.estimate?.length ?? 0).reverse()) {
+    const x = chart.valToPos(target.length, 'x', true);
+    ctx.beginPath();
+    ctx.moveTo(x, bbox.top);
+    ctx.lineTo(x, bbox.top + bbox.height);
+    ctx.stroke();
+    const label =
+      target.kind === 'branch-point'
+        ? `◇ ${target.label}`
+        : `△ ${target.label.replace(/:.*/, '').replace('Waypoint ', '')}`;
+    // Labels that would lie over each other are left to the list on the Path tab.
+    if (x < busyUntil) continue;
+    ctx.fillText(
+      label,
+      Math.min(x, bbox.left + bbox.width - ctx.measureText(label).width),
+      bbox.top - 5 * devicePixelRatio,
+    );
+    busyUntil = x + ctx.measureText(label).width + 8;
+  }
+  ctx.restore();
+};
+
+const drawLegend = (chart: UPlot): void => {
+  const { ctx, bbox } = chart;
+  const ratio = devicePixelRatio;
+  ctx.save();
+  ctx.font = `${12 * ratio}px sans-serif`;
+  ctx.fillStyle = inkOf('--ink');
+  ctx.strokeStyle = inkOf('--ink');
+  ctx.lineWidth = 2 * ratio;
+  const lines: [string, number[]][] = [
+    ['needed, with margin', []],
+    ['buckles at', [7 * ratio, 4 * ratio]],
+  ];
+  lines.forEach(([text, dash], i) => {
+    const y = bbox.top + bbox.height - (8 + 16 * (1 - i)) * ratio;
+    ctx.setLineDash(dash);
+    ctx.beginPath();
+    ctx.moveTo(bbox.left + 8 * ratio, y);
+    ctx.lineTo(bbox.left + 34 * ratio, y);
+    ctx.stroke();
+    ctx.fillText(text, bbox.left + 40 * ratio, y + 4 * ratio);
+  });
+  ctx.restore();
+};
+
+/** The measured tension at the present length, as a dot. */
+const drawTension = (chart: UPlot): void => {
+  const { frame } = consoleStore.getState();
+  const tension = frame?.readings.tail_tension;
+  if (frame?.estimate == null || tension?.quality !== 'good') return;
+  const { ctx } = chart;
+  ctx.save();
+  ctx.fillStyle = inkOf('--ink');
+  ctx.beginPath();
+  ctx.arc(
+    chart.valToPos(frame.estimate.length, 'x', true),
+    chart.valToPos(Math.max(FLOOR, tension.value), 'y', true),
+    5 * devicePixelRatio,
+    0,
+    2 * Math.PI,
+  );
+  ctx.fill();
+  ctx.restore();
+};
+
+const inkOf = (name: string): string =>
+  getComputedStyle(document.documentElement).getPropertyValue(name).trim();
