@@ -91,8 +91,10 @@ export const writeStation = (
   shape.tangent.set(tangentOf(pose), 3 * station);
 };
 
-const stepsOf = (segment: Segment, spacing: number, sagitta: number): number => {
-  if (segment.length === 0) return 0;
-  const bySagitta = Math.sqrt((8 * sagitta) / Math.abs(segment.curvature));
-  return Math.ceil(segment.length / Math.min(spacing, bySagitta));
+/** Steps of one arc; a length or curvature that is not a number gets one station, which then is not a number either. */
+const stepsOf = ({ length, curvature }: Segment, spacing: number, sagitta: number): number => {
+  if (length === 0) return 0;
+  const bySagitta = Math.sqrt((8 * sagitta) / Math.abs(curvature));
+  const steps = Math.ceil(length / (bySagitta < spacing ? bySagitta : spacing));
+  return Number.isNaN(steps) ? 1 : steps;
 };

@@ -1,0 +1,94 @@
+import { Dialog } from 'radix-ui';
+import { consoleApi } from '../connection/console-api.ts';
+import { hand } from '../drive/use-hand.ts';
+import { clearNotice, report, useNotice } from '../parts/notice.ts';
+import { useConsole } from '../store/console-store.ts';
+
+const SHAPES = { high: '■', medium: '▲', low: '●' } as const;
+
+/** The newest alarm or refusal in one line; the rest a press away. */
+export const AlarmLine = () => {
+  const alarm = useConsole(({ frame }) => frame?.alarms[0] ?? null);
+  const more = useConsole(({ frame }) => frame?.alarms.length ?? 0);
+  const refusal = useConsole(({ frame }) => refusalText(frame));
+  const notice = useNotice();
+  const [tone, text] =
+    alarm !== null && alarm.state !== 'acknowledged'
+      ? [`alarm-${alarm.priority}`, `${SHAPES[alarm.priority]} ${alarm.cause} ${alarm.action}`]
+      : refusal !== ''
+        ? ['alarm-refusal', `▲ ${refusal}`]
+        : notice !== null
+          ? [
+              notice.kind === 'refused' ? 'alarm-refusal' : '',
+              `${notice.kind === 'refused' ? '▲' : '✓'} ${notice.text}`,
+            ]
+          : ['', more === 0 ? 'No alarms.' : `${more} acknowledged ${more === 1 ? 'alarm' : 'alarms'}.`];
+  return (
+    <footer className={`alarm-line ${tone}`}>
+      <p role="alert" title={text}>
+        {text}
+      </p>
+      {notice === null ? null : (
+        <button type="button" onClick={clearNotice}>
+          Clear note
+        </button>
+      )}
+      <AlarmList />
+    </footer>
+  );
+};
+
+const refusalText = (frame: import('../../shared-model/contract/frame.ts').ConsoleFrame | null): string => {
+  if (frame?.hold.state === 'burnt') return frame.hold.text;
+  const first = frame?.refusal?.reasons[0];
+  if (frame?.refusal == null || first === undefined) return '';
+  const verb = {
+    grow: 'Growing',
+    retract: 'Retracting',
+    backtrack: 'Backtracking',
+    steer: 'Steering',
+    pressure: 'Changing pressure',
+  }[frame.refusal.motion];
+  return `${verb} refused. ${first.text} ${first.remedy}`;
+};
+
+const AlarmList = () => {
+  const alarms = useConsole(({ frame }) => frame?.alarms ?? NONE);
+  const acknowledge = async (id: string): Promise<void> =>
+    report(await consoleApi.request({ kind: 'acknowledge-alarm', alarm: id }), 'Acknowledged.');
+  return (
+    <Dialog.Root onOpenChange={(open) => open && hand.letGo()}>
+      <Dialog.Trigger asChild>
+        <button type="button">Alarms ({alarms.length})</button>
+      </Dialog.Trigger>
+      <Dialog.Portal>
+        <Dialog.Overlay className="overlay" />
+        <Dialog.Content className="dialog" aria-describedby={undefined}>
+          <Dialog.Title>Alarms</Dialog.Title>
+          {alarms.length === 0 ? <p>There are none.</p> : null}
+          {alarms.map((alarm) => (
+            <section key={alarm.id} className="panel">
+              <h3>
+                {SHAPES[alarm.priority]} {alarm.cause}
+              </h3>
+              <p>Consequence: {alarm.consequence}</p>
+              <p>Action: {alarm.action}</p>
+              <p>
+                Priority {alarm.priority}, {alarm.state}.
+              </p>
+              {alarm.state === 'acknowledged' ? null : (
+                <button type="button" onClick={() => void acknowledge(alarm.id)}>
+                  Acknowledge
+                </button>
+              )}
+            </section>
+          ))}
+          <Dialog.Close asChild>
+            <button type="button">Close</button>
+          </Dialog.Close>
+        </Dialog.Content>
+      </Dialog.Portal>
+    </Dialog.Root>
+  );
+};
+const NONE: never[] = [];

@@ -1,0 +1,164 @@
+import { Switch } from 'radix-ui';
+import { useState } from 'react';
+import { consoleApi } from '../connection/console-api.ts';
+import { fixed } from '../parts/format.ts';
+import { HoldButton } from '../parts/hold-button.tsx';
+import { report } from '../parts/notice.ts';
+import { useConsole } from '../store/console-store.ts';
+import { ConfirmDialog } from './confirm-dialog.tsx';
+import { MarkControls } from './mark-controls.tsx';
+import { chooseSpeed, SPEEDS, useSpeed } from './use-hand.ts';
+
+/** Glove-size controls; everything that moves is held. */
+export const DriveControls = () => (
+  <div className="controls">
+    <TravelControls />
+    <SteeringControls />
+    <PressureControls />
+    <RetractorControl />
+    <MarkControls />
+  </div>
+);
+
+const TravelControls = () => {
+  const speed = useSpeed();
+  const limit = useConsole(({ rig }) => rig?.limits.tipSpeed ?? 0);
+  return (
+    <section className="panel" aria-label="Travel">
+      <div className="drive-buttons">
+        <HoldButton control="grow" part={{ motion: { kind: 'grow' } }} label="Grow">
+          Grow
+        </HoldButton>
+        <HoldButton control="retract" part={{ motion: { kind: 'retract' } }} label="Retract">
+          Retract
+        </HoldButton>
+      </div>
+      <fieldset className="row segment" aria-label="Speed" style={{ border: 0, margin: 0, padding: 0 }}>
+        {(['fine', 'coarse'] as const).map((one) => (
+          <button key={one} type="button" aria-pressed={speed === one} onClick={() => chooseSpeed(one)}>
+            {one === 'fine' ? 'Fine' : 'Coarse'} {fixed(SPEEDS[one] * limit, 2)} m/s
+          </button>
+        ))}
+      </fieldset>
+      <Trace />
+    </section>
+  );
+};
+
+/** What was asked, permitted and confirmed by the rig. */
+const Trace = () => {
+  const asked = useConsole(({ frame }) => fixed(frame?.drive.asked ?? 0, 2));
+  const permitted = useConsole(({ frame }) => fixed(frame?.drive.permitted ?? 0, 2));
+  const confirmed = useConsole(({ frame }) => frame?.drive.confirmed === true);
+  return (
+    <p className="trace">
+      Asked {asked}, permitted {permitted} m/s, {confirmed ? '✓ confirmed by the rig' : '… not confirmed'}
+    </p>
+  );
+};
+
+const STEERS = [
+  { label: 'Steer up', sign: '↑', right: 0, down: -1 },
+  { label: 'Steer left', sign: '←', right: -1, down: 0 },
+  { label: 'Steer down', sign: '↓', right: 0, down: 1 },
+  { label: 'Steer right', sign: '→', right: 1, down: 0 },
+] as const;
+
+const SteeringControls = () => {
+  const bend = useConsole(({ frame }) =>
+    frame?.estimate == null
+      ? 'bend unknown'
+      : `bend ${fixed(frame.estimate.bend.right, 2)} right, ${fixed(frame.estimate.bend.down, 2)} down 1/m`,
+  );
+  const pad = (i: number) => {
+    const { label, sign, right, down } = STEERS[i]!;
+    return (
+      <HoldButton control={label} part={{ steer: { kind: 'bend', right, down } }} label={label}>
+        {sign}
+      </HoldButton>
+    );
+  };
+  return (
+    <section className="panel" aria-label="Steering">
+      <div className="steer">
+        <span />
+        {pad(0)}
+        <HoldButton control="straighten" part={{ steer: { kind: 'straighten' } }} label="Straighten">
+          <span style={{ fontSize: 12 }}>Straight</span>
+        </HoldButton>
+        {pad(1)}
+        {pad(2)}
+        {pad(3)}
+      </div>
+      <p className="trace">{bend}</p>
+    </section>
+  );
+};
+
+const PressureControls = () => (
+  <section className="panel" aria-label="Body pressure controls">
+    <h3>Body pressure</h3>
+    <HoldButton control="pressure-up" part={{ pressure: 1 }} label="Raise body pressure">
+      Raise
+    </HoldButton>
+    <HoldButton control="pressure-down" part={{ pressure: -1 }} label="Lower body pressure">
+      Lower
+    </HoldButton>
+  </section>
+);
+
+const STATES = {
+  absent: 'not attached',
+  engaging: 'engaging…',
+  attached: 'grips the tail',
+  releasing: 'releasing…',
+  unknown: 'state unknown',
+} as const;
+
+const RetractorControl = () => {
+  const has = useConsole(({ rig }) => rig?.tipRetractor ?? 'none');
+  const state = useConsole(({ frame }) => frame?.tipRetractor.state ?? 'unknown');
+  const source = useConsole(({ frame }) => frame?.tipRetractor.source ?? 'sensed');
+  const [asking, setAsking] = useState<boolean | null>(null);
+  const checked = state === 'attached' || state === 'engaging';
+  const set = async (attached: boolean, confirmed: boolean): Promise<void> =>
+    report(
+      await consoleApi.request({ kind: 'set-tip-retractor', attached, confirmed }),
+      source === 'declared'
+        ? 'Declared, and recorded.'
+        : `Sent; ${attached ? 'it engages' : 'it releases'} when the rig says so.`,
+    );
+  const change = (attached: boolean): void =>
+    has === 'declared' ? setAsking(attached) : void set(attached, true);
+  return (
+    <section className="panel" aria-label="Tip retractor controls" style={{ width: 172 }}>
+      <Switch.Root
+        className="switch"
+        checked={checked}
+        onCheckedChange={change}
+        disabled={has === 'none'}
+        aria-label="Tip retractor"
+      >
+        <span className="knob" aria-hidden="true" />
+        Tip retractor
+      </Switch.Root>
+      <p className="trace">
+        {has === 'none'
+          ? 'This rig has none.'
+          : `${STATES[state]}, ${source === 'sensed' ? 'sensed by the rig' : 'on the word of the operator'}`}
+      </p>
+      <ConfirmDialog
+        open={asking !== null}
+        title={asking ? 'Tip retractor fitted?' : 'Tip retractor released?'}
+        text={
+          asking
+            ? 'This rig cannot sense it. Confirm only if you have seen it fitted and gripping the tail; pulling relies on your word, and it is recorded.'
+            : 'Confirm that it no longer grips the tail.'
+        }
+        confirm={asking ? 'It is fitted and grips' : 'It is released'}
+        onConfirm={() => void set(asking === true, true)}
+        onClose={() => setAsking(null)}
+      />
+    </section>
+  );
+};
