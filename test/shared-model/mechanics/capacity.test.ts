@@ -49,7 +49,7 @@ describe('column and bending together', () => {
   });
 
   it('are not a number where one of their values is not', () => {
-    const sound = [50, 50, 0.04, 0.01, 0.1, 0.8] as const;
+    const sound = [50, 50, 0.04, 0.01, 0.1, 0.8];
     sound.forEach((_, i) => {
       const [F_c, PA, R, e, M_g, eta] = sound.with(i, Number.NaN) as [
         number,

@@ -68,7 +68,7 @@ describe('the column', () => {
   });
 
   it('has no load where one of its values is not a number', () => {
-    const sound = [1, 1, 1, 0.1] as const;
+    const sound = [1, 1, 1, 0.1];
     sound.forEach((_, i) => {
       const [EI, S, L, a] = sound.with(i, Number.NaN) as [number, number, number, number];
       expect(columnLoad(EI, S, L, a)).toBeNaN();
