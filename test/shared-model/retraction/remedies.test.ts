@@ -20,7 +20,7 @@ const limits: Limits = {
   tailSlackMax: 0.3,
 };
 const hooked = [
-  { length: 0.35, curvature: 0, plane: 0 },
+  { length: 0.2, curvature: 0, plane: 0 },
   { length: 0.15, curvature: 4, plane: 0 },
 ];
 const long = straight(0.85);
@@ -84,7 +84,7 @@ describe('the remedies of a pull that would buckle', () => {
     const straightened = (length: number) =>
       judgeWayBack(
         wayBackInput([
-          { length: 0.35, curvature: 0, plane: 0 },
+          { length: 0.2, curvature: 0, plane: 0 },
           { length: 0.15 - length, curvature: 4, plane: 0 },
           { length, curvature: 0, plane: 0 },
         ]),
@@ -106,7 +106,7 @@ describe('the remedies of a pull that would buckle', () => {
     const remedy = only('shorter', findRemedies(wayBackInput(hooked), limits, false));
     const value = remedy?.value as number;
     const upTo = (length: number) =>
-      judgeWayBack(wayBackInput([hooked[0]!, { ...hooked[1]!, length: length - 0.35 }])).kind;
+      judgeWayBack(wayBackInput([hooked[0]!, { ...hooked[1]!, length: length - 0.2 }])).kind;
     expect(upTo(value)).toBe('clear');
     expect(upTo(value + 0.01)).toBe('would-buckle');
   });
