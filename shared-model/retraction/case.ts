@@ -84,13 +84,14 @@ export const parseCase = (json: unknown): ParsedCase => {
   const length = segments.reduce((sum, one) => sum + one.length, 0);
   if (!Number.isFinite(length))
     return { ok: false, id, reason: 'segments: found more than any number of metres' };
-  if (retractTo > length)
+  // Lengths that a person added up may differ in the last digits.
+  if (!(retractTo <= length * (1 + 1e-9)))
     return {
       ok: false,
       id,
       reason: `retractTo: found ${retractTo}; allowed is 0 to the body length ${length}`,
     };
-  return { ok: true, value: parsed.data, length };
+  return { ok: true, value: { ...parsed.data, retractTo: Math.min(retractTo, length) }, length };
 };
 
 const idOf = (json: unknown): string | number | null => {

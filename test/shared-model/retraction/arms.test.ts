@@ -41,7 +41,7 @@ describe('the arms of a body', () => {
   it('are the farthest any section lies from the tip tangent and from the line to the guide', () => {
     fc.assert(
       fc.property(arcs, fc.double({ min: 0, max: 0.2, noNaN: true }), (segments, setback) => {
-        const shape = sampleSegments(segments, 0.02);
+        const shape = sampleSegments(segments, 0.01);
         const tip = tipPose(segments);
         const toGuide = subtract([0, 0, -setback], tip.position);
         fc.pre(length(toGuide) > 0.01);
