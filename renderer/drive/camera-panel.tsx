@@ -31,7 +31,8 @@ const LIVE = 0.5;
 const DrawnCamera = ({ passages }: { readonly passages: readonly Passage[] }) => {
   const canvas = useRef<HTMLCanvasElement>(null);
   useEffect(() => {
-    const ctx = canvas.current?.getContext('2d');
+    // Painted by the processor: where there is no GPU, an emulated one would hold up the controls.
+    const ctx = canvas.current?.getContext('2d', { willReadFrequently: true });
     if (!ctx) return;
     const facets = culvertFacets(passages);
     let drawn = '';

@@ -98,6 +98,12 @@ const optionsFor = (element: HTMLElement): UPlot.Options => {
       {
         ...axis,
         size: 52,
+        filter: (_, ticks) => ticks.map((tick) => (Number.isInteger(Math.log10(tick)) ? tick : null)),
+        grid: {
+          ...axis.grid,
+          filter: (_, ticks) => ticks.map((tick) => (Number.isInteger(Math.log10(tick)) ? tick : null)),
+        },
+        ticks: { show: false },
         values: (_, ticks) =>
           ticks.map((tick) => (tick !== null && Number.isInteger(Math.log10(tick)) ? `${tick} N` : '')),
       },
@@ -133,6 +139,8 @@ const drawMarks = (chart: UPlot): void => {
   ctx.fillStyle = inkOf('--ink');
   ctx.strokeStyle = inkOf('--ink-soft');
   ctx.setLineDash([3, 3]);
+  ctx.textAlign = 'left';
+  ctx.textBaseline = 'alphabetic';
   let busyUntil = Number.NEGATIVE_INFINITY;
   for (const target of targetsOnBody(mission, frame?.estimate?.length ?? 0).reverse()) {
     const x = chart.valToPos(target.length, 'x', true);
@@ -164,6 +172,8 @@ const drawLegend = (chart: UPlot): void => {
   ctx.fillStyle = inkOf('--ink');
   ctx.strokeStyle = inkOf('--ink');
   ctx.lineWidth = 2 * ratio;
+  ctx.textAlign = 'left';
+  ctx.textBaseline = 'alphabetic';
   const lines: [string, number[]][] = [
     ['needed, with margin', []],
     ['buckles at', [7 * ratio, 4 * ratio]],

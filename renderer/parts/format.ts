@@ -1,8 +1,9 @@
 /** Numbers for people: fixed places so that they do not jump; a dash where there is none. */
-export const fixed = (value: number | null | undefined, places: number): string =>
-  value === null || value === undefined || !Number.isFinite(value)
-    ? '–'
-    : value.toFixed(places).replace('-', '−');
+export const fixed = (value: number | null | undefined, places: number): string => {
+  if (value === null || value === undefined || !Number.isFinite(value)) return '–';
+  const text = value.toFixed(places);
+  return text.replace('-', Number(text) === 0 ? '' : '−');
+};
 
 export const metres = (value: number | null | undefined): string => `${fixed(value, 2)} m`;
 export const kilopascals = (value: number | null | undefined): string =>

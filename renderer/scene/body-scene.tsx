@@ -12,18 +12,13 @@ import { boundsOf, toScene } from './to-scene.ts';
 const VIEWS = ['Orbit', 'Plan', 'Elevation', 'From the tip'] as const;
 type View = (typeof VIEWS)[number];
 
+const NO_WEBGL = 'This computer draws no 3D (WebGL is off). The Path tab shows plan and elevation.';
+
 /** The body in 3D; drawn only when something changed, without a GPU if need be. */
 export const BodyScene = () => {
   const [view, setView] = useState<View>('Orbit');
-  const [works] = useState(hasWebGl);
   const colours = useSceneColours();
   const grid = useConsole(({ body }) => gridSize(body?.points ?? []));
-  if (!works)
-    return (
-      <div className="panel scene">
-        This computer draws no 3D (WebGL is off). The Path tab shows plan and elevation.
-      </div>
-    );
   return (
     <section className="panel scene" aria-label="Body in 3D">
       <Canvas
@@ -32,6 +27,7 @@ export const BodyScene = () => {
         gl={{ antialias: false, powerPreference: 'low-power' }}
         camera={{ fov: 40, near: 0.02, far: 400 }}
         aria-label="3D view of the body"
+        fallback={NO_WEBGL}
       >
         <color attach="background" args={[colours.background]} />
         <ambientLight intensity={1.6} />
@@ -126,12 +122,4 @@ const place = (camera: PerspectiveCamera, controls: OrbitControls, view: View): 
   } else camera.position.copy(target).add(new Vector3(0.55, 0.6, 0.58).multiplyScalar(distance));
   controls.target.copy(target);
   controls.update();
-};
-
-const hasWebGl = (): boolean => {
-  try {
-    return document.createElement('canvas').getContext('webgl2') !== null;
-  } catch {
-    return false;
-  }
 };
