@@ -14,8 +14,10 @@ export const DriveControls = () => (
   <div className="controls">
     <TravelControls />
     <SteeringControls />
-    <PressureControls />
-    <RetractorControl />
+    <div className="stack">
+      <PressureControls />
+      <RetractorControl />
+    </div>
     <MarkControls />
   </div>
 );
@@ -97,13 +99,14 @@ const SteeringControls = () => {
 
 const PressureControls = () => (
   <section className="panel" aria-label="Body pressure controls">
-    <h3>Body pressure</h3>
-    <HoldButton control="pressure-up" part={{ pressure: 1 }} label="Raise body pressure">
-      Raise
-    </HoldButton>
-    <HoldButton control="pressure-down" part={{ pressure: -1 }} label="Lower body pressure">
-      Lower
-    </HoldButton>
+    <div className="row">
+      <HoldButton control="pressure-up" part={{ pressure: 1 }} label="Raise body pressure">
+        Raise pressure
+      </HoldButton>
+      <HoldButton control="pressure-down" part={{ pressure: -1 }} label="Lower body pressure">
+        Lower pressure
+      </HoldButton>
+    </div>
   </section>
 );
 
@@ -131,7 +134,7 @@ const RetractorControl = () => {
   const change = (attached: boolean): void =>
     has === 'declared' ? setAsking(attached) : void set(attached, true);
   return (
-    <section className="panel" aria-label="Tip retractor controls" style={{ width: 172 }}>
+    <section className="panel" aria-label="Tip retractor controls">
       <Switch.Root
         className="switch"
         checked={checked}

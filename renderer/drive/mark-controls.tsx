@@ -85,13 +85,8 @@ const LogWaypoint = () => {
     if (answer.ok) setNote('');
   };
   return (
-    <div className="row" style={{ gap: 6 }}>
-      <button
-        type="button"
-        style={{ flex: 'none', minWidth: 118 }}
-        aria-busy={busy}
-        onClick={() => void log()}
-      >
+    <>
+      <button type="button" aria-busy={busy} onClick={() => void log()}>
         Log waypoint
       </button>
       <input
@@ -99,12 +94,13 @@ const LogWaypoint = () => {
         placeholder="Note"
         value={note}
         maxLength={500}
-        style={{ minHeight: 64 }}
         onChange={(event) => setNote(event.target.value)}
       />
-    </div>
+    </>
   );
 };
+
+const ARM_SIGNS = { open: '○', current: '●', explored: '◐' } as const;
 
 /** At a branch point: the arm that growing will enter. */
 const ArmChoice = () => {
@@ -123,19 +119,19 @@ const ArmChoice = () => {
   };
   if (point === null) return <p className="trace full">At a branch point, the arm to take is chosen here.</p>;
   return (
-    <div className="row segment full">
-      <span>{point.label}, arm to take:</span>
+    <div className="row segment">
+      <span className="trace">Arm to take:</span>
       {[...point.arms]
         .sort((a, b) => a.name.localeCompare(b.name))
         .map((arm) => (
           <button
             key={arm.name}
             type="button"
-            style={{ minHeight: 44 }}
+            title={arm.state}
             aria-pressed={arm.state === 'current'}
             onClick={() => void choose(arm.name)}
           >
-            {arm.name} ({arm.state})
+            {arm.name} {ARM_SIGNS[arm.state]}
           </button>
         ))}
     </div>
@@ -160,21 +156,20 @@ const Backtrack = () => {
   const target = targets.find((one) => one.id === chosen) ?? targets[0];
   return (
     <div className="row full">
-      <label style={{ flex: 1 }}>
-        Backtrack to
-        <select
-          value={target?.id ?? ''}
-          disabled={targets.length === 0}
-          onChange={(event) => setChosen(event.target.value)}
-        >
-          {targets.length === 0 ? <option value="">no mark behind the tip yet</option> : null}
-          {targets.map((one) => (
-            <option key={one.id} value={one.id}>
-              {one.label} at {metres(one.length)}
-            </option>
-          ))}
-        </select>
-      </label>
+      <select
+        aria-label="Backtrack to"
+        style={{ flex: 1, minHeight: 64 }}
+        value={target?.id ?? ''}
+        disabled={targets.length === 0}
+        onChange={(event) => setChosen(event.target.value)}
+      >
+        {targets.length === 0 ? <option value="">Backtrack to… (no mark behind the tip yet)</option> : null}
+        {targets.map((one) => (
+          <option key={one.id} value={one.id}>
+            Backtrack to {one.label} at {metres(one.length)}
+          </option>
+        ))}
+      </select>
       {target === undefined ? null : (
         <HoldButton
           key={target.id}
