@@ -42,7 +42,7 @@ export const operatorOf = (page: Page) => {
   const status = (name: string): Locator => page.getByRole('status', { name, exact: true });
   const button = (name: string): Locator => page.getByRole('button', { name, exact: true });
   const length = async (): Promise<number> =>
-    Number(/([−\d.]+)\s*m/.exec(await status('Body length').innerText())?.[1] ?? Number.NaN);
+    Number(/([−\d.]+)\s*m/.exec((await status('Body length').textContent()) ?? '')?.[1] ?? Number.NaN);
 
   /** Holds a control until something is so; presses afresh where the console says the press is over. */
   const holdUntil = async (control: Locator, reached: () => Promise<boolean>): Promise<void> => {
@@ -54,7 +54,7 @@ export const operatorOf = (page: Page) => {
           await page.mouse.up();
           return;
         }
-        if (/press again/.test(await page.getByRole('alert').innerText())) break;
+        if (/press again/.test((await page.getByRole('alert').textContent()) ?? '')) break;
         await page.waitForTimeout(60);
       }
       await page.mouse.up();
@@ -62,10 +62,22 @@ export const operatorOf = (page: Page) => {
     throw new Error('the control was held again and again, and it never came to it');
   };
 
+  /** The body length once the body has come to rest. */
+  const restingLength = async (): Promise<number> => {
+    let before = Number.NaN;
+    let now = await length();
+    while (now !== before) {
+      await page.waitForTimeout(400);
+      before = now;
+      now = await length();
+    }
+    return now;
+  };
+
   return {
     status,
     button,
-    length,
+    restingLength,
     holdUntil,
     growTo: (metres: number) => holdUntil(button('Grow'), async () => (await length()) >= metres),
     openTab: (name: string) => page.getByRole('tab', { name }).click(),

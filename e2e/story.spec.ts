@@ -45,11 +45,11 @@ const drive = async (page: Page, url: string): Promise<void> => {
 
   await operator.growTo(9.5);
   await operator.expectWayBack('would buckle');
-  const refusedAt = await operator.length();
+  const refusedAt = await operator.restingLength();
   await operator.holdUntil(operator.button('Retract'), async () =>
-    /Retracting refused\. Pulling takes \d+ N/.test(await operator.alert().innerText()),
+    /Retracting refused\. Pulling takes \d+ N/.test((await operator.alert().textContent()) ?? ''),
   );
-  expect(Math.abs((await operator.length()) - refusedAt)).toBeLessThan(0.03);
+  expect(Math.abs((await operator.restingLength()) - refusedAt)).toBeLessThan(0.03);
 
   await operator.button('Mark branch point').click();
   await page.getByLabel('Name (may stay empty)').fill('Fork');
@@ -75,14 +75,9 @@ const drive = async (page: Page, url: string): Promise<void> => {
   await operator.expectWayBack('by tip retractor');
   await page.getByLabel('Backtrack to').selectOption({ label: await forkOption(page) });
   await operator.holdUntil(operator.button('Backtrack'), async () =>
-    /arrived/.test(
-      await operator
-        .button('Backtrack')
-        .innerText()
-        .catch(() => 'arrived'),
-    ),
+    /arrived/.test((await operator.button('Backtrack').textContent()) ?? ''),
   );
-  expect(Math.abs((await operator.length()) - refusedAt)).toBeLessThan(0.06);
+  expect(Math.abs((await operator.restingLength()) - refusedAt)).toBeLessThan(0.06);
 
   await page.getByRole('switch', { name: 'Tip retractor' }).click();
   await expect(page.getByRole('switch', { name: 'Tip retractor' })).not.toBeChecked();

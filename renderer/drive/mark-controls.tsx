@@ -148,12 +148,12 @@ const Backtrack = () => {
         ? 'arrived'
         : `${metres(frame.backtrack.remaining)} to go`,
   );
-  const targets = useMemo(
-    () => targetsOnBody(mission, length).filter((target) => target.length < length - 0.02),
-    [mission, length],
-  );
+  const targets = useMemo(() => targetsOnBody(mission, length), [mission, length]);
   const [chosen, setChosen] = useState('');
-  const target = targets.find((one) => one.id === chosen) ?? targets[0];
+  const target =
+    targets.find((one) => one.id === chosen) ??
+    targets.find((one) => one.length < length - 0.05) ??
+    targets[0];
   return (
     <div className="row full">
       <select
@@ -176,6 +176,7 @@ const Backtrack = () => {
           control="backtrack"
           part={{ motion: { kind: 'backtrack', target: target.id } }}
           label="Backtrack"
+          onHold={() => setChosen(target.id)}
         >
           Backtrack {remaining}
         </HoldButton>

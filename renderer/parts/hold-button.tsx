@@ -1,4 +1,4 @@
-import type { PointerEvent, ReactNode } from 'react';
+import { type PointerEvent, type ReactNode, useEffect } from 'react';
 import type { HeldPart } from '../drive/hand.ts';
 import { hand, useHeld } from '../drive/use-hand.ts';
 
@@ -8,23 +8,30 @@ export const HoldButton = (props: {
   readonly part: HeldPart;
   readonly label: string;
   readonly className?: string;
-  readonly disabled?: boolean;
+  /** Called when a hold begins. */
+  readonly onHold?: () => void;
   readonly children: ReactNode;
 }) => {
   const held = useHeld(props.control);
+  const { control } = props;
+  // A control that goes off the screen is let go; its pointer would never tell.
+  useEffect(() => () => hand.release(control), [control]);
+  const begin = (): void => {
+    props.onHold?.();
+    hand.hold(control, props.part);
+  };
   const start = (event: PointerEvent<HTMLButtonElement>): void => {
     if (event.button !== 0) return;
     event.currentTarget.setPointerCapture(event.pointerId);
-    hand.hold(props.control, props.part);
+    begin();
   };
-  const end = (): void => hand.release(props.control);
+  const end = (): void => hand.release(control);
   return (
     <button
       type="button"
       className={`hold ${props.className ?? ''}`}
       aria-label={props.label}
       aria-pressed={held}
-      disabled={props.disabled === true}
       onPointerDown={start}
       onPointerUp={end}
       onPointerCancel={end}
@@ -33,7 +40,7 @@ export const HoldButton = (props: {
       onKeyDown={(event) => {
         if ((event.code !== 'Space' && event.code !== 'Enter') || event.repeat) return;
         event.preventDefault();
-        hand.hold(props.control, props.part);
+        begin();
       }}
       onKeyUp={(event) => {
         if (event.code === 'Space' || event.code === 'Enter') end();

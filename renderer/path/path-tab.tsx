@@ -92,7 +92,7 @@ const BacktrackTo = ({ id, label }: { readonly id: string; readonly label: strin
   const mission = useConsole((state) => state.mission);
   const length = useConsole(({ frame }) => Math.round((frame?.estimate?.length ?? 0) * 20) / 20);
   const reachable = useMemo(
-    () => targetsOnBody(mission, length).some((target) => target.id === id && target.length < length - 0.02),
+    () => targetsOnBody(mission, length).some((target) => target.id === id && target.length < length + 0.05),
     [mission, length, id],
   );
   const state = useConsole(({ frame }) =>
