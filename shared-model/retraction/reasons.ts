@@ -112,7 +112,7 @@ export const pullReasons = (request: DriveRequest): Reason[] => {
       text: 'The verdict is not of this moment.',
       remedy: 'Hold still and press again.',
     });
-  if (wayBack.kind === 'cannot-judge') reasons.push(...wayBack.reasons);
+  if (wayBack.kind === 'cannot-judge') reasons.push(...wayBack.reasons, CANNOT_JUDGE);
   else if (wayBack.kind === 'would-buckle')
     reasons.push({
       code: 'would-buckle',
@@ -122,6 +122,13 @@ export const pullReasons = (request: DriveRequest): Reason[] => {
   else if (wayBack.kind === 'by-tip-retractor') reasons.push(...retractorReasons(request, wayBack));
   else reasons.push(...basePullReasons(request, wayBack));
   return reasons;
+};
+
+/** Stands beside the reasons of the verdict, so that one without any reason refuses too. */
+const CANNOT_JUDGE: Reason = {
+  code: 'cannot-judge',
+  text: 'The way back cannot be judged.',
+  remedy: 'See what is missing; hold still until it is there.',
 };
 
 const basePullReasons = (request: DriveRequest, wayBack: Extract<WayBack, { kind: 'clear' }>): Reason[] => {
