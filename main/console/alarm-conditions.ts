@@ -21,6 +21,14 @@ export const ALARMS = {
     onDelay: 0,
     offDelay: 1,
   },
+  emergencyStopUnread: {
+    id: 'emergency-stop-unread',
+    priority: 'high',
+    consequence: 'All motion is refused, as if it were pressed.',
+    action: 'Check its line; the Rig tab says what is read.',
+    onDelay: 0.5,
+    offDelay: 1,
+  },
   pressureHigh: {
     id: 'pressure-high',
     priority: 'high',
@@ -74,15 +82,10 @@ export const alarmConditions = (inputs: AlarmInputs): Condition[] => {
   }
   if (inputs.emergencyStopWired) {
     const stop = readings.emergency_stop;
-    const released = stop?.quality === 'good' && stop.value === 0;
-    if (!released)
-      conditions.push({
-        ...ALARMS.emergencyStop,
-        cause:
-          stop?.quality === 'good'
-            ? 'The wired emergency stop is pressed.'
-            : 'The wired emergency stop cannot be read.',
-      });
+    if (stop?.quality !== 'good')
+      conditions.push({ ...ALARMS.emergencyStopUnread, cause: 'The wired emergency stop cannot be read.' });
+    else if (stop.value !== 0)
+      conditions.push({ ...ALARMS.emergencyStop, cause: 'The wired emergency stop is pressed.' });
   }
   const pressure = readings.body_pressure;
   if (pressure?.quality === 'good' && !(pressure.value <= 1.1 * limits.bodyPressureMax))

@@ -1,4 +1,5 @@
 import { Dialog } from 'radix-ui';
+import type { Alarm, ConsoleFrame } from '../../shared-model/contract/frame.ts';
 import { consoleApi } from '../connection/console-api.ts';
 import { hand } from '../drive/use-hand.ts';
 import { clearNotice, report, useNotice } from '../parts/notice.ts';
@@ -12,17 +13,16 @@ export const AlarmLine = () => {
   const more = useConsole(({ frame }) => frame?.alarms.length ?? 0);
   const refusal = useConsole(({ frame }) => refusalText(frame));
   const notice = useNotice();
+  const refused: Line | null = refusal === '' ? null : ['alarm-refusal', `▲ ${refusal}`];
+  const noted: Line | null =
+    notice === null
+      ? null
+      : notice.kind === 'refused'
+        ? ['alarm-refusal', `▲ ${notice.text}`]
+        : ['', `✓ ${notice.text}`];
+  const quiet: Line = ['', more === 0 ? 'No alarms.' : `No new alarms, ${more} in the list.`];
   const [tone, text] =
-    alarm !== null && alarm.state !== 'acknowledged'
-      ? [`alarm-${alarm.priority}`, `${SHAPES[alarm.priority]} ${alarm.cause} ${alarm.action}`]
-      : refusal !== ''
-        ? ['alarm-refusal', `▲ ${refusal}`]
-        : notice !== null
-          ? [
-              notice.kind === 'refused' ? 'alarm-refusal' : '',
-              `${notice.kind === 'refused' ? '▲' : '✓'} ${notice.text}`,
-            ]
-          : ['', more === 0 ? 'No alarms.' : `${more} acknowledged ${more === 1 ? 'alarm' : 'alarms'}.`];
+    lineOf(alarm, 'unacknowledged') ?? refused ?? noted ?? lineOf(alarm, 'returned') ?? quiet;
   return (
     <footer className={`alarm-line ${tone}`}>
       <p role="alert" title={text}>
@@ -38,7 +38,16 @@ export const AlarmLine = () => {
   );
 };
 
-const refusalText = (frame: import('../../shared-model/contract/frame.ts').ConsoleFrame | null): string => {
+type Line = readonly [tone: string, text: string];
+
+/** The alarm in one line, if it is in this state. What is over says so, and what holds now comes first. */
+const lineOf = (alarm: Alarm | null, state: Alarm['state']): Line | null => {
+  if (alarm === null || alarm.state !== state) return null;
+  if (state === 'returned') return ['', `${SHAPES[alarm.priority]} Over, not yet seen: ${alarm.cause}`];
+  return [`alarm-${alarm.priority}`, `${SHAPES[alarm.priority]} ${alarm.cause} ${alarm.action}`];
+};
+
+const refusalText = (frame: ConsoleFrame | null): string => {
   if (frame?.hold.state === 'burnt') return frame.hold.text;
   const first = frame?.refusal?.reasons[0];
   if (frame?.refusal == null || first === undefined) return '';

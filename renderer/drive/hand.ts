@@ -14,6 +14,8 @@ export interface Hand {
   /** The console says that this press is burnt. */
   burnt(press: number): void;
   isHeld(control: string): boolean;
+  /** The press in the hand is burnt: nothing moves until all is let go. */
+  isBurnt(): boolean;
 }
 
 /** A held control renews its lease this often [ms]; the console waits five times as long. */
@@ -79,8 +81,11 @@ export const createHand = ({ send, tipSpeed, repeat, changed }: HandParts): Hand
       changed();
     },
     burnt: (burntPress) => {
-      if (burntPress === press && held.size > 0) isBurnt = true;
+      if (burntPress !== press || held.size === 0 || isBurnt) return;
+      isBurnt = true;
+      changed();
     },
     isHeld: (control) => held.has(control),
+    isBurnt: () => isBurnt,
   };
 };

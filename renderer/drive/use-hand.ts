@@ -27,7 +27,9 @@ export const hand = createHand({
   changed: () => handStore.setState(({ version }) => ({ version: version + 1 })),
 });
 
-export const useHeld = (control: string): boolean => useStore(handStore, () => hand.isHeld(control));
+/** Whether a control is held, and whether that still asks for anything. */
+export const useHeld = (control: string): 'free' | 'held' | 'burnt' =>
+  useStore(handStore, () => (hand.isHeld(control) ? (hand.isBurnt() ? 'burnt' : 'held') : 'free'));
 export const useSpeed = (): Speed => useStore(handStore, (state) => state.speed);
 export const chooseSpeed = (speed: Speed): void => handStore.setState({ speed });
 

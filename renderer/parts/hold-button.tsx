@@ -29,9 +29,9 @@ export const HoldButton = (props: {
   return (
     <button
       type="button"
-      className={`hold ${props.className ?? ''}`}
+      className={`hold ${held === 'burnt' ? 'hold-burnt' : ''} ${props.className ?? ''}`}
       aria-label={props.label}
-      aria-pressed={held}
+      aria-pressed={held === 'held'}
       onPointerDown={start}
       onPointerUp={end}
       onPointerCancel={end}
@@ -47,7 +47,7 @@ export const HoldButton = (props: {
       }}
       onBlur={end}
     >
-      {props.children}
+      {held === 'burnt' ? '▲ Let go' : props.children}
     </button>
   );
 };
