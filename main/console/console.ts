@@ -10,7 +10,6 @@ import {
   type Answer,
   type ConsoleRequest,
   requestSchema,
-  STILL,
   WATCHER_REQUESTS,
   type Wish,
 } from '../../shared-model/contract/request.ts';
@@ -24,8 +23,10 @@ import type { Recorder } from '../record/recorder.ts';
 import type { RigLink } from '../rig/rig-link.ts';
 import type { RigDescription } from '../rig/signal.ts';
 import { alarmConditions } from './alarm-conditions.ts';
-import { type AlarmChange, acknowledgeAlarm, EMPTY_BOARD, listAlarms, stepAlarms } from './alarms.ts';
-import { ARRIVED, approachSpeed } from './approach.ts';
+import { acknowledgeAlarm, EMPTY_BOARD, listAlarms, stepAlarms } from './alarms.ts';
+import { approachSpeed } from './approach.ts';
+import { type Backtracking, stepBacktracking } from './backtracking.ts';
+import { askedSpeed, holdStatus } from './hold-status.ts';
 import {
   expireLease,
   LEASE_LIFE,
@@ -36,8 +37,9 @@ import {
   wishOf,
 } from './lease.ts';
 import { createMissionLog } from './mission-log.ts';
-import { duePathEvent } from './path-events.ts';
+import { createMissionNotes } from './mission-notes.ts';
 import { answerRequest, type RequestContext } from './requests.ts';
+import { sampleOf } from './sample.ts';
 import { NO_RAMPS, stepRamps } from './setpoint-ramps.ts';
 import { createTipRetractor, retractorStatus } from './tip-retractor.ts';
 import { createWayBackJudge, followShape, judgeTo, outlookLine } from './way-back.ts';
@@ -72,12 +74,11 @@ const TICK = 0.05;
 /** Large parts of a frame are sent at most this often [s]. */
 const BODY_EVERY = 0.1;
 const OUTLOOK_EVERY = 0.5;
-/** Without a permitted motion for this long the body has come to rest [s]. */
-const REST = 0.4;
 
 export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const { rig, link, recorder, clock } = parts;
   const mission = createMissionLog(clock, recorder, (event) => broadcast({ kind: 'event', event }));
+  const notes = createMissionNotes((event) => void mission.append(event));
   const clients = new Set<string>();
   const judge = createWayBackJudge(rig);
   const described = new Set(Object.keys(rig.reads));
@@ -88,16 +89,10 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   let estimate = createEstimate();
   let ramps = NO_RAMPS;
   let retractor = createTipRetractor(rig.reads.tip_retractor_attached !== undefined);
-  let attachedBefore = false;
   let board = EMPTY_BOARD;
   let readings: Readings = {};
-  let linkBefore: LinkStatus['state'] = 'opening';
-  let movedAt = Number.NEGATIVE_INFINITY;
   let confirmed = false;
-  let markedLength = 0;
-  let backtrack: { press: number; target: string; label: string; length: number; arrived: boolean } | null =
-    null;
-  let refusedPress = '';
+  let backtracking: Backtracking | null = null;
   let seq = 0;
   let lastTickAt = Number.NaN;
   let bodyAt = Number.NEGATIVE_INFINITY;
@@ -140,56 +135,32 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     lease = expireLease(lease, now);
     const status = retractorStatus(retractor, readings, now, rig.limits.readingAge);
     const attached = status.state === 'attached';
-    noteRetractor(attached);
+    notes.retractor(status);
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
     bodyChanged ||= estimate.changedFrom < estimate.path.count;
     followShape(judge, estimate);
     const around = { estimate, readings, retractorAttached: attached, now };
     const wayBack = judgeTo(judge, rig, around, 0);
-    const wish = wantedNow(now);
-    const verdict = backtrack === null ? wayBack : judgeTo(judge, rig, around, backtrack.length);
-    const judged = decide(wish, verdict, attached, now, dt);
+    const stepped = stepBacktracking(
+      backtracking,
+      wishOf(lease, now),
+      lease.state === 'held' ? lease.press : null,
+      estimate.frame?.length ?? null,
+      () => targetsOnBody(mission.state(), estimate.frame?.length ?? 0),
+    );
+    backtracking = stepped.backtracking;
+    for (const event of stepped.events) void mission.append(event);
+    const verdict = backtracking === null ? wayBack : judgeTo(judge, rig, around, backtracking.length);
+    const judged = decide(stepped.wish, verdict, attached, now, dt);
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
-    noteMotion(judged, wayBack, now);
+    notes.motion(estimate.frame, judged.tipSpeed, now);
+    notes.refusal(judged, verdict, lease, estimate.frame?.length ?? null);
     noteAlarms(now);
-    recordSample(judged, wayBack, now);
-    publish(judged, wayBack, now);
-  };
-
-  /** The held wish, with a backtrack that has arrived held still. */
-  const wantedNow = (now: number): Wish => {
-    const wish = wishOf(lease, now);
-    if (wish.motion.kind !== 'backtrack' || lease.state !== 'held') {
-      backtrack = null;
-      return wish;
-    }
-    const target = wish.motion.target;
-    if (backtrack === null || backtrack.press !== lease.press || backtrack.target !== target)
-      startBacktrack(target, lease.press);
-    const remaining = remainingTo(backtrack?.length ?? Number.NaN);
-    if (backtrack !== null && !backtrack.arrived && remaining !== null && remaining <= ARRIVED) {
-      backtrack = { ...backtrack, arrived: true };
-      void mission.append({ kind: 'backtrack-arrived', target, length: estimate.frame?.length ?? 0 });
-    }
-    return backtrack?.arrived ? { ...wish, motion: STILL.motion } : wish;
-  };
-
-  const startBacktrack = (target: string, press: number): void => {
-    const found = targetsOnBody(mission.state(), estimate.frame?.length ?? 0).find(
-      (one) => one.id === target,
+    recorder.sample(
+      sampleOf({ readings, estimate: estimate.frame, wayBack, wish: wishOf(lease, now), judged, now }),
     );
-    if (found === undefined) {
-      backtrack = null;
-      return;
-    }
-    backtrack = { press, target, label: found.label, length: found.length, arrived: false };
-    void mission.append({
-      kind: 'backtrack-started',
-      target,
-      from: estimate.frame?.length ?? 0,
-      to: found.length,
-    });
+    publish(judged, wayBack, now);
   };
 
   const remainingTo = (length: number): number | null => {
@@ -208,7 +179,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       rig,
       dt,
     );
-    const target = wish.motion.kind === 'backtrack' ? (backtrack?.length ?? Number.NaN) : 0;
+    const target = wish.motion.kind === 'backtrack' ? (backtracking?.length ?? Number.NaN) : 0;
     const remaining = remainingTo(target);
     const judged = PermittedDrive.judge({
       now,
@@ -236,117 +207,21 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     return judged;
   };
 
+  /** After any change of the link nothing moves until a person presses afresh, and no ramp runs on. */
   const noteLink = (status: LinkStatus): void => {
-    if (status.state === linkBefore) return;
-    const text =
-      status.state === 'lost'
-        ? `${status.text} ${status.remedy}`
-        : `The line to ${status.port} is ${status.state}.`;
-    // After any reconnection nothing moves until a person presses afresh.
+    if (!notes.link(status)) return;
     lease = revokeLease(lease, 'The link was interrupted.');
     ramps = NO_RAMPS;
     if (status.state === 'open') estimate = { ...estimate, payout: null };
     retractor = { ...retractor, commanded: null };
-    linkBefore = status.state;
-    void mission.append({ kind: 'link', state: status.state, text });
-  };
-
-  const noteRetractor = (attached: boolean): void => {
-    if (attached === attachedBefore) return;
-    attachedBefore = attached;
-    void mission.append({
-      kind: 'tip-retractor',
-      state: attached ? 'attached' : 'absent',
-      source: retractor.source,
-    });
-  };
-
-  const noteMotion = (judged: Judgement, wayBack: WayBack, now: number): void => {
-    if (judged.tipSpeed !== 0) movedAt = now;
-    const rests = now - movedAt > REST;
-    const frame = estimate.frame;
-    if (frame !== null) {
-      const due = duePathEvent(markedLength, frame.length, frame.tip, rests);
-      if (due !== null) {
-        markedLength = frame.length;
-        void mission.append(due);
-      }
-    }
-    noteRefusal(judged, wayBack);
-  };
-
-  /** One record a press and cause, not one a tick. */
-  const noteRefusal = (judged: Judgement, wayBack: WayBack): void => {
-    const { refusal } = judged;
-    if (
-      refusal === null ||
-      refusal.motion === 'steer' ||
-      refusal.motion === 'pressure' ||
-      lease.state !== 'held'
-    )
-      return;
-    const key = `${lease.client} ${lease.press} ${refusal.reasons.map((reason) => reason.code).join(' ')}`;
-    if (key === refusedPress) return;
-    refusedPress = key;
-    const forces = wayBack.kind === 'would-buckle' || wayBack.kind === 'clear' ? wayBack.worst : null;
-    void mission.append({
-      kind: 'pull-refused',
-      motion: refusal.motion,
-      length: estimate.frame?.length ?? null,
-      forces:
-        forces === null
-          ? null
-          : { ...forces, ratio: Number.isFinite(forces.ratio) ? forces.ratio : Number.MAX_VALUE },
-      margin: wayBack.kind === 'cannot-judge' ? null : wayBack.margin,
-      reasons: refusal.reasons.map((reason) => ({ ...reason })),
-    });
   };
 
   const noteAlarms = (now: number): void => {
-    const { emergencyStopWired, limits } = rig;
-    const stepped = stepAlarms(
-      board,
-      alarmConditions({
-        link: link.status(),
-        readings,
-        limits,
-        emergencyStopWired,
-        recording: recorder.status(),
-      }),
-      now,
-    );
+    const inputs = { link: link.status(), readings, limits: rig.limits, recording: recorder.status() };
+    const conditions = alarmConditions({ ...inputs, emergencyStopWired: rig.emergencyStopWired });
+    const stepped = stepAlarms(board, conditions, now);
     board = stepped.board;
-    noteAlarmChanges(stepped.changes);
-  };
-  const noteAlarmChanges = (changes: readonly AlarmChange[]): void => {
-    for (const { change, alarm } of changes)
-      void mission.append({
-        kind: 'alarm',
-        id: alarm.id,
-        change,
-        priority: alarm.priority,
-        cause: alarm.cause,
-      });
-  };
-
-  const recordSample = (judged: Judgement, wayBack: WayBack, now: number): void => {
-    const values: Record<string, number> = {};
-    const bad: string[] = [];
-    for (const [name, reading] of Object.entries(readings)) {
-      if (reading.quality === 'good') values[name] = reading.value;
-      else bad.push(name);
-    }
-    const worst =
-      wayBack.kind === 'clear' || wayBack.kind === 'would-buckle' ? wayBack.worst.ratio : Number.NaN;
-    recorder.sample({
-      at: now,
-      values,
-      bad,
-      length: estimate.frame?.length ?? null,
-      ratio: Number.isFinite(worst) ? worst : null,
-      asked: askedSpeed(wishOf(lease, now)),
-      permitted: judged.tipSpeed,
-    });
+    notes.alarms(stepped.changes);
   };
 
   const publish = (judged: Judgement, wayBack: WayBack, now: number): void => {
@@ -363,12 +238,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       readings,
       estimate: estimate.frame,
       wayBack,
-      hold:
-        lease.state === 'held'
-          ? { state: 'held', press: lease.press, wish: lease.wish }
-          : lease.state === 'burnt'
-            ? { state: 'burnt', press: lease.press, text: lease.text }
-            : { state: 'neutral' },
+      hold: holdStatus(lease),
       drive: {
         asked: askedSpeed(wishOf(lease, now)),
         permitted: judged.tipSpeed,
@@ -379,12 +249,12 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       refusal: judged.refusal,
       tipRetractor: retractorStatus(retractor, readings, now, rig.limits.readingAge),
       backtrack:
-        backtrack === null
+        backtracking === null
           ? null
           : {
-              target: backtrack.target,
-              remaining: remainingTo(backtrack.length) ?? 0,
-              arrived: backtrack.arrived,
+              target: backtracking.target,
+              remaining: remainingTo(backtracking.length) ?? 0,
+              arrived: backtracking.arrived,
             },
       alarms: listAlarms(board),
       recording: recorder.status(),
@@ -415,7 +285,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   });
 
   const setDriver = (client: string | null, change: 'took-over' | 'left'): void => {
-    disarm('Another window drives now.');
+    disarm(change === 'left' ? 'The driving window is gone.' : 'Another window drives now.');
     lease = NEUTRAL_LEASE;
     driver = client;
     void mission.append({ kind: 'driver', client: client ?? 'nobody', change });
@@ -438,7 +308,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     acknowledge: (id) => {
       const stepped = acknowledgeAlarm(board, id);
       board = stepped.board;
-      noteAlarmChanges(stepped.changes);
+      notes.alarms(stepped.changes);
       return stepped.changes.length > 0;
     },
     reconnect: () => {
@@ -535,6 +405,3 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     },
   };
 };
-
-const askedSpeed = (wish: Wish): number =>
-  wish.motion.kind === 'still' ? 0 : wish.motion.kind === 'grow' ? wish.tipSpeed : -wish.tipSpeed;

@@ -72,7 +72,8 @@ export const createMaster = (line: SerialLine, timing: LineTiming, clock: Clock)
   const next = (): void => {
     if (current !== null || queue.length === 0 || wake !== null || closed) return;
     const wait = Math.max(quarantinedUntil, lastByteAt + gap) - clock.now();
-    if (wait > 0) {
+    // Less than a nanosecond is rounding, and a timer for it would never end.
+    if (wait > 1e-9) {
       wake = clock.after(wait, () => {
         wake = null;
         next();

@@ -64,8 +64,13 @@ export const openArms = (state: MissionState): { readonly point: BranchPoint; re
     point.arms.filter((arm) => arm.state === 'open').map((arm) => ({ point, arm: arm.name })),
   );
 
+/**
+ * So near to a branch point the next arm may be chosen [m]: the tip creeps on by half the loose tail when a retractor
+ * lets go, and a fork is wider than that.
+ */
+const CHOOSING = 0.1;
+
 /** The branch point that the tip is at, if any. */
 export const branchPointHere = (state: MissionState, bodyLength: number): BranchPoint | null =>
-  branchPointsOnBody(state, bodyLength).find(
-    (point) => Math.abs(point.length - bodyLength) <= AT_BRANCH_POINT,
-  ) ?? null;
+  branchPointsOnBody(state, bodyLength).find((point) => Math.abs(point.length - bodyLength) <= CHOOSING) ??
+  null;

@@ -119,7 +119,7 @@ const judgeMotion = (request: DriveRequest): MotionJudgement => {
 };
 
 /** Loose tail that the spool leaves while the retractor pulls [m]. */
-const SLACK_KEPT = 0.08;
+const SLACK_KEPT = 0.05;
 
 /** The tail moves twice as fast as the tip; a retractor inverts at the tip and the spool only takes up what comes. */
 const pull = (request: DriveRequest): MotionJudgement => {
