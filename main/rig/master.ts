@@ -34,6 +34,9 @@ interface Waiting {
   readonly done: (reply: Reply) => void;
 }
 
+/** A timer this much late rang behind a stall of the process [s]. */
+const STALL = 0.01;
+
 /** Silence that ends a frame [s]: 3.5 characters, 1.75 ms above 19,200 baud (MODBUS over Serial Line V1.02, 2.5.1.1). */
 export const frameGap = (timing: LineTiming): number =>
   timing.baudRate > 19_200 ? 0.00175 : (3.5 * timing.bitsPerCharacter) / timing.baudRate;
@@ -88,9 +91,7 @@ export const createMaster = (line: SerialLine, timing: LineTiming, clock: Clock)
     current = mine;
     const bytes = encodeQuestion(waiting.question);
     const onWire = (bytes.length + answerLength(waiting.question)) * characterTime;
-    mine.cancel = clock.after(onWire + timing.replyTimeout, () => {
-      if (current === mine) finish({ outcome: 'timeout' });
-    });
+    giveUpAfter(mine, onWire + timing.replyTimeout);
     try {
       await line.write(bytes);
       mine.sent = true;
@@ -98,6 +99,19 @@ export const createMaster = (line: SerialLine, timing: LineTiming, clock: Clock)
       if (current === mine)
         finish({ outcome: 'dropped', why: error instanceof Error ? error.message : String(error) });
     }
+  };
+
+  /**
+   * A timer that rings late says that this process stood still, not that the unit is silent: its answer may lie unread.
+   * It is given the time once more; no other question is asked meanwhile, so the answer can only be to this one.
+   */
+  const giveUpAfter = (waiting: NonNullable<typeof current>, wait: number, again = false): void => {
+    const due = clock.now() + wait;
+    waiting.cancel = clock.after(wait, () => {
+      if (current !== waiting) return;
+      if (!again && clock.now() - due > STALL) giveUpAfter(waiting, timing.replyTimeout, true);
+      else finish({ outcome: 'timeout' });
+    });
   };
 
   const stopListening = line.onData((bytes) => {

@@ -62,7 +62,9 @@ export const BenchTab = () => {
             {VALUES.map((one) => (
               <tr key={one.value}>
                 <td>{one.name}</td>
-                <td>{catalogue.includes(one.value) ? '◐ catalogue' : '● measured'}</td>
+                <td style={{ whiteSpace: 'nowrap' }}>
+                  {catalogue.includes(one.value) ? '◐ catalogue' : '● measured'}
+                </td>
                 <td>{one.decides}</td>
                 <td>{one.trial}</td>
               </tr>

@@ -117,10 +117,10 @@ const ArmChoice = () => {
         `Growing takes the ${arm} arm now.`,
       );
   };
-  if (point === null) return <p className="trace full">At a branch point, the arm to take is chosen here.</p>;
+  if (point === null) return <p className="trace">At a branch point, the arm to take is chosen here.</p>;
   return (
     <div className="row segment">
-      <span className="trace">Arm to take:</span>
+      <span className="trace">Take arm</span>
       {[...point.arms]
         .sort((a, b) => a.name.localeCompare(b.name))
         .map((arm) => (
@@ -166,7 +166,7 @@ const Backtrack = () => {
         {targets.length === 0 ? <option value="">Backtrack to… (no mark behind the tip yet)</option> : null}
         {targets.map((one) => (
           <option key={one.id} value={one.id}>
-            Backtrack to {one.label} at {metres(one.length)}
+            To {one.label} at {metres(one.length)}
           </option>
         ))}
       </select>

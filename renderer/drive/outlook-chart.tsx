@@ -15,6 +15,10 @@ export const OutlookChart = () => {
   const summary = useConsole(summaryOf);
   return (
     <figure className="outlook" aria-label="Outlook for the way back">
+      <p className="outlook-key" aria-hidden="true">
+        <span className="key-line" /> needed, with margin <span className="key-line key-dashed" /> buckles at{' '}
+        <span className="key-refused" /> refused ● measured
+      </p>
       <div ref={host} className="outlook-plot" />
       <figcaption className="visually-hidden">{summary}</figcaption>
     </figure>
@@ -91,21 +95,17 @@ const optionsFor = (element: HTMLElement): UPlot.Options => {
     padding: [18, 12, 0, 0],
     scales: {
       x: { time: false, range: (_, low, high) => [0, Math.max(1, high, low)] },
-      y: { distr: 3, range: (_, low, high) => [Math.min(1, low ?? 1), Math.max(300, high ?? 1)] },
+      y: { distr: 3, range: (_, low, high) => [stepBelow(low ?? 1), stepAbove(high ?? 100)] },
     },
     axes: [
       { ...axis, size: 30, values: (_, ticks) => ticks.map((tick) => `${tick} m`) },
       {
         ...axis,
         size: 52,
-        filter: (_, ticks) => ticks.map((tick) => (Number.isInteger(Math.log10(tick)) ? tick : null)),
-        grid: {
-          ...axis.grid,
-          filter: (_, ticks) => ticks.map((tick) => (Number.isInteger(Math.log10(tick)) ? tick : null)),
-        },
+        filter: keepSteps,
+        grid: { ...axis.grid, filter: keepSteps },
         ticks: { show: false },
-        values: (_, ticks) =>
-          ticks.map((tick) => (tick !== null && Number.isInteger(Math.log10(tick)) ? `${tick} N` : '')),
+        values: (_, ticks) => ticks.map((tick) => (tick === null ? '' : `${tick} N`)),
       },
     ],
     series: [
@@ -113,9 +113,19 @@ const optionsFor = (element: HTMLElement): UPlot.Options => {
       { stroke: colour('--ink'), width: 2, points: { show: false } },
       { stroke: colour('--ink'), width: 2, dash: [7, 4], points: { show: false } },
     ],
-    hooks: { drawAxes: [shadeRefused], draw: [drawMarks, drawLegend, drawTension] },
+    hooks: { drawAxes: [shadeRefused], draw: [drawMarks, drawTension] },
   };
 };
+
+const STEPS = [1, 2, 5, 10];
+const decadeOf = (force: number): number => 10 ** Math.floor(Math.log10(force));
+const stepAbove = (force: number): number =>
+  decadeOf(force) * STEPS.find((step) => step * decadeOf(force) > force)!;
+const stepBelow = (force: number): number =>
+  decadeOf(force) * STEPS.findLast((step) => step * decadeOf(force) < force * (1 - 1e-9))!;
+/** Ticks at 1, 2 and 5 of every decade. */
+const keepSteps: UPlot.Axis.Filter = (_, ticks) =>
+  ticks.map((tick) => (STEPS.includes(Number((tick / decadeOf(tick)).toFixed(6))) ? tick : null));
 
 /** Hatches the lengths at which a pull is refused, before anyone tries. */
 const shadeRefused = (chart: UPlot): void => {
@@ -161,32 +171,6 @@ const drawMarks = (chart: UPlot): void => {
     );
     busyUntil = x + ctx.measureText(label).width + 8;
   }
-  ctx.restore();
-};
-
-const drawLegend = (chart: UPlot): void => {
-  const { ctx, bbox } = chart;
-  const ratio = devicePixelRatio;
-  ctx.save();
-  ctx.font = `${12 * ratio}px sans-serif`;
-  ctx.fillStyle = inkOf('--ink');
-  ctx.strokeStyle = inkOf('--ink');
-  ctx.lineWidth = 2 * ratio;
-  ctx.textAlign = 'left';
-  ctx.textBaseline = 'alphabetic';
-  const lines: [string, number[]][] = [
-    ['needed, with margin', []],
-    ['buckles at', [7 * ratio, 4 * ratio]],
-  ];
-  lines.forEach(([text, dash], i) => {
-    const y = bbox.top + bbox.height - (8 + 16 * (1 - i)) * ratio;
-    ctx.setLineDash(dash);
-    ctx.beginPath();
-    ctx.moveTo(bbox.left + 8 * ratio, y);
-    ctx.lineTo(bbox.left + 34 * ratio, y);
-    ctx.stroke();
-    ctx.fillText(text, bbox.left + 40 * ratio, y + 4 * ratio);
-  });
   ctx.restore();
 };
 

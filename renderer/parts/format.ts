@@ -28,3 +28,11 @@ export const inUnit = (value: number, unit: string): string => {
   if (unit === 'N') return `${fixed(value, 1)} N`;
   return `${fixed(value, Number.isInteger(value) ? 0 : 3)} ${unit}`.trim();
 };
+
+/** Local date and time, the same in every country: 2026-03-31 14:05:09. */
+export const dateAndTime = (time: string): string => {
+  const at = new Date(time);
+  const two = (n: number) => String(n).padStart(2, '0');
+  const date = [at.getFullYear(), two(at.getMonth() + 1), two(at.getDate())].join('-');
+  return `${date} ${[at.getHours(), at.getMinutes(), at.getSeconds()].map(two).join(':')}`;
+};

@@ -1,7 +1,7 @@
 import { useMemo, useState } from 'react';
 import type { Branch, MissionState, Waypoint } from '../../shared-model/mission/mission.ts';
 import { openArms, targetsOnBody } from '../../shared-model/mission/selectors.ts';
-import { fixed, metres } from '../parts/format.ts';
+import { dateAndTime, fixed, metres } from '../parts/format.ts';
 import { HoldButton } from '../parts/hold-button.tsx';
 import { useConsole } from '../store/console-store.ts';
 import { ELEVATION, PLAN, PlanDrawing } from './plan-drawing.tsx';
@@ -154,7 +154,7 @@ const WaypointRow = ({ waypoint }: { readonly waypoint: Waypoint }) => {
           at {metres(waypoint.length)}; {fixed(x, 2)} m right, {fixed(-y, 2)} m up, {fixed(z, 2)} m ahead of
           the base (estimated)
         </p>
-        <p className="trace">{new Date(waypoint.time).toLocaleString()}</p>
+        <p className="trace">{dateAndTime(waypoint.time)}</p>
         <BacktrackTo id={waypoint.id} label={`waypoint ${waypoint.number}`} />
       </div>
     </article>

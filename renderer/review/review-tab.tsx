@@ -1,7 +1,8 @@
 import { useCallback, useEffect, useState } from 'react';
 import type { Answer, MissionOnDisk } from '../../shared-model/contract/request.ts';
 import { consoleApi } from '../connection/console-api.ts';
-import { fixed, megabytes } from '../parts/format.ts';
+import { dateAndTime, fixed, megabytes } from '../parts/format.ts';
+import { useConsole } from '../store/console-store.ts';
 
 /** The missions on disk. */
 export const ReviewTab = () => {
@@ -50,6 +51,9 @@ const MissionTable = ({
   const found = missions.filter((one) =>
     `${one.place} ${one.folder}`.toLowerCase().includes(search.toLowerCase()),
   );
+  const recordingNow = useConsole(({ frame }) =>
+    frame?.recording.state === 'recording' ? frame.recording.folder : null,
+  );
   if (found.length === 0)
     return <p>{missions.length === 0 ? 'There are none yet.' : 'None fits the search.'}</p>;
   return (
@@ -59,11 +63,11 @@ const MissionTable = ({
           <th>Place</th>
           <th>Started</th>
           <th>State</th>
-          <th>Longest</th>
-          <th>Branch points</th>
-          <th>Waypoints</th>
-          <th>Alarms</th>
-          <th>Size</th>
+          <th className="number">Longest</th>
+          <th className="number">Branch points</th>
+          <th className="number">Waypoints</th>
+          <th className="number">Alarms</th>
+          <th className="number">Size</th>
           <th>Folder</th>
         </tr>
       </thead>
@@ -73,8 +77,8 @@ const MissionTable = ({
             <td>
               {one.place} {one.simulated ? '(simulated)' : ''}
             </td>
-            <td>{one.started === '' ? '–' : new Date(one.started).toLocaleString()}</td>
-            <td>{one.trouble ?? (one.ended === null ? 'not closed' : 'finished')}</td>
+            <td>{one.started === '' ? '–' : dateAndTime(one.started)}</td>
+            <td>{stateOf(one, recordingNow)}</td>
             <td className="number">{fixed(one.longest, 2)} m</td>
             <td className="number">{one.branchPoints}</td>
             <td className="number">{one.waypoints}</td>
@@ -86,4 +90,9 @@ const MissionTable = ({
       </tbody>
     </table>
   );
+};
+
+const stateOf = (mission: MissionOnDisk, recordingNow: string | null): string => {
+  if (mission.folder === recordingNow) return '● being recorded';
+  return mission.trouble ?? (mission.ended === null ? 'not closed' : 'finished');
 };

@@ -94,7 +94,7 @@ const Signals = () => {
             <th>Table</th>
             <th>Address</th>
             <th>Type</th>
-            <th>Value</th>
+            <th className="number">Value</th>
             <th>Quality</th>
           </tr>
         </thead>

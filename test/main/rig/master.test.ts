@@ -54,6 +54,23 @@ describe('the master', () => {
     expect(await replies).toEqual([{ outcome: 'timeout' }, { outcome: 'answer', values: [1009] }]);
   });
 
+  test('takes the answer that lay unread while the process stood still, and gives up on a silent unit after it', async () => {
+    const { clock, master } = bench((frame) =>
+      frame[3] === 5 ? [{ after: 0.2, bytes: honest(frame) }] : [],
+    );
+    const late = master.ask(read(5));
+    await clock.advanceTo(0.001);
+    // The timer of 40 ms rings at 190 ms, and the answer is read 10 ms later.
+    await clock.stallUntil(0.19);
+    await clock.advanceTo(0.21);
+    expect(await late).toEqual({ outcome: 'answer', values: [1005] });
+    const never = master.ask(read(6));
+    await clock.advanceTo(0.22);
+    await clock.stallUntil(0.5);
+    await clock.advanceTo(0.6);
+    expect(await never).toEqual({ outcome: 'timeout' });
+  });
+
   test('lets a stop overtake everything that waits, and what waited is never sent', async () => {
     const { clock, master, written } = bench((frame) => [{ after: 0.003, bytes: honest(frame) }]);
     const first = master.ask(read(1));
