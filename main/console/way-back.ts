@@ -22,7 +22,8 @@ const CHART_POINTS = 160;
 export interface WayBackJudge {
   readonly arms: Arms;
   readonly space: JudgeSpace;
-  readonly targetSpace: JudgeSpace;
+  /** Held while the sensor's own band lies within it, so that noise asks for no new outlook. Pa. */
+  band: { readonly low: number; readonly high: number };
   remedies: readonly Remedy[];
   remediesAt: number;
 }
@@ -30,7 +31,7 @@ export interface WayBackJudge {
 export const createWayBackJudge = (rig: RigDescription): WayBackJudge => ({
   arms: createArms(256, holdingOf(rig)),
   space: createJudgeSpace(),
-  targetSpace: createJudgeSpace(),
+  band: { low: Number.NaN, high: Number.NaN },
   remedies: [],
   remediesAt: Number.NEGATIVE_INFINITY,
 });
@@ -60,7 +61,7 @@ export const judgeTo = (
   target: number,
 ): WayBack => {
   const input = inputOf(judge, rig, around, target);
-  const verdict = judgeWayBack(input, target === 0 ? judge.space : judge.targetSpace);
+  const verdict = judgeWayBack(input, judge.space);
   if (verdict.kind !== 'would-buckle') return verdict;
   if (around.now - judge.remediesAt >= REMEDIES_EVERY) {
     judge.remedies = findRemedies(
@@ -85,19 +86,35 @@ const inputOf = (
 ): WayBackInput => {
   const { estimate, readings, now } = around;
   const age = rig.limits.readingAge;
+  const pressure = heldBand(judge, goodValue(readings.body_pressure, now, age), rig.limits.pressureAccuracy);
   return {
     shape: estimate.frame === null ? null : estimate.path,
     arms: judge.arms,
     body: rig.body,
     margin: defaultMargin(rig.body),
-    pressure: goodValue(readings.body_pressure, now, age) ?? null,
-    pressureBand: rig.limits.pressureAccuracy,
+    ...pressure,
     payout: goodValue(readings.tail_payout, now, age) ?? null,
     // Faster takes more tension; judged at the fastest that may be asked for.
     tipSpeed: rig.limits.tipSpeed,
     target,
     retractor: around.retractorAttached ? { heldTension: heldTension(readings, now, age) } : null,
   };
+};
+
+/**
+ * The pressure's band to judge at: the sensor's and half as much on either side, kept until the sensor's leaves it. A
+ * wider band only makes the verdict more careful.
+ */
+const heldBand = (
+  judge: WayBackJudge,
+  pressure: number | undefined,
+  accuracy: number,
+): { readonly pressure: number | null; readonly pressureBand: number } => {
+  if (pressure === undefined) return { pressure: null, pressureBand: accuracy };
+  const within = judge.band.low <= pressure - accuracy && pressure + accuracy <= judge.band.high;
+  if (!within) judge.band = { low: pressure - 1.5 * accuracy, high: pressure + 1.5 * accuracy };
+  const { low, high } = judge.band;
+  return { pressure: (low + high) / 2, pressureBand: (high - low) / 2 };
 };
 
 const heldTension = (readings: Readings, now: number, age: number): number | null => {
@@ -107,16 +124,18 @@ const heldTension = (readings: Readings, now: number, age: number): number | nul
 
 /** The last judgement to the base as a chart, thinned. */
 export const outlookLine = (judge: WayBackJudge, estimate: Estimate, rig: RigDescription): OutlookLine => {
-  const { nominal } = judge.space;
-  const stride = Math.max(1, Math.ceil(nominal.count / CHART_POINTS));
-  const stations = Array.from({ length: nominal.count }, (_, i) => i).filter(
-    (i) => i > 0 && (i % stride === 0 || i === nominal.count - 1),
+  const { low, high } = judge.space;
+  const stride = Math.max(1, Math.ceil(low.count / CHART_POINTS));
+  const stations = Array.from({ length: low.count }, (_, i) => i).filter(
+    (i) => i > 0 && (i % stride === 0 || i === low.count - 1),
   );
-  const pick = (array: Float64Array) => stations.map((i) => Number(array[i]!.toPrecision(5)));
+  // At each length the end of the pressure band that the verdict rests on.
+  const pick = (part: 'baseTension' | 'capacity') =>
+    stations.map((i) => Number((low.ratio[i]! <= high.ratio[i]! ? low : high)[part][i]!.toPrecision(5)));
   return {
-    length: pick(estimate.path.s),
-    invert: pick(nominal.baseTension),
-    buckle: pick(nominal.capacity),
+    length: stations.map((i) => Number(estimate.path.s[i]!.toPrecision(5))),
+    invert: pick('baseTension'),
+    buckle: pick('capacity'),
     margin: defaultMargin(rig.body),
   };
 };

@@ -12,14 +12,12 @@ import {
 import type { ForcesAt, Reason, WayBack } from './verdict.ts';
 import { inputReasons, type WayBackInput } from './way-back-input.ts';
 
-/** Working space that a caller keeps between ticks; `nominal` is also what the chart shows. */
+/** Outlooks at both ends of the pressure sensor's band, kept between ticks. */
 export interface JudgeSpace {
-  readonly nominal: Outlook;
   readonly low: Outlook;
   readonly high: Outlook;
 }
 export const createJudgeSpace = (room = 256): JudgeSpace => ({
-  nominal: createOutlook(room),
   low: createOutlook(room),
   high: createOutlook(room),
 });
@@ -28,28 +26,31 @@ export const createJudgeSpace = (room = 256): JudgeSpace => ({
 export const defaultMargin = (body: BodyDescription): number =>
   MEASURED_VALUES.every((value) => body.measured.includes(value)) ? 1.25 : 1.5;
 
+/** Below an encoder's count nothing is loose, and above it whole millimetres are, rounded up: noise is no new outlook. */
+const loosePart = (excess: number): number => (excess < 5e-4 ? 0 : Math.ceil(1000 * (excess - 1e-9)) / 1000);
+
 /**
  * Whether pulling the tail turns the tip, at every body length from here to the target and at both ends of the
- * pressure sensor's band. Refuses unless proven: anything missing or not finite is `cannot-judge` with its reasons.
+ * pressure sensor's band: capacity is concave in the pressure and the tension linear, so between the ends the ratio is
+ * never smaller. Refuses unless proven: anything missing or not finite is `cannot-judge` with its reasons.
  */
 export const judgeWayBack = (input: WayBackInput, space: JudgeSpace = createJudgeSpace()): WayBack => {
   const reasons = inputReasons(input);
   const { shape, pressure, payout, margin } = input;
   if (reasons.length > 0 || shape === null || pressure === null || payout === null)
     return cannotJudge(reasons);
-  const excess = Math.max(0, payout / 2 - shape.s[shape.count - 1]!);
+  const excess = loosePart(payout / 2 - shape.s[shape.count - 1]!);
   const pull = { body: input.body, tipSpeed: input.tipSpeed, excess };
   const outlookAt = (P: number, out: Outlook) =>
     computeOutlook(shape, input.arms, { ...pull, pressure: P }, out);
   const outlooks = [
-    outlookAt(pressure, space.nominal),
     outlookAt(pressure - input.pressureBand, space.low),
     outlookAt(pressure + input.pressureBand, space.high),
   ];
   const worst = outlooks
     .map((outlook) => forcesAt(shape, input.arms, outlook, worstStation(shape, outlook, input.target)))
     .reduce(worse);
-  const here = forcesAt(shape, input.arms, outlooks[1]!, shape.count - 1);
+  const here = forcesAt(shape, input.arms, space.low, shape.count - 1);
   if ([worst.ratio, worst.baseTension, worst.capacity, here.capacity].some(Number.isNaN))
     return cannotJudge([
       {
@@ -82,7 +83,7 @@ const judgeRetractor = (
   const least = outlooks.map((outlook) => leastCapacity(shape, outlook, target));
   const heldMax = Math.min(...least) / margin;
   const crush = (pressure - input.pressureBand) * area(body);
-  const tipTension = outlooks[2]!.tipTension;
+  const tipTension = Math.max(...outlooks.map((outlook) => outlook.tipTension));
   if (!(crush >= margin * tipTension))
     return cannotJudge([
       {

@@ -31,6 +31,11 @@ export interface Outlook {
   capacity: Float64Array;
   ratio: Float64Array;
   tipTension: number;
+  /** e^{μΘ} from base to station, and ∫e^{μB}ds of the tail up to it [m]: what does not change with the pressure. */
+  amplification: Float64Array;
+  dragged: Float64Array;
+  /** What the arrays were last filled for; null before. */
+  filled: { readonly arms: Arms; readonly revision: number; readonly pull: PullConditions } | null;
 }
 
 export const createOutlook = (room: number): Outlook => ({
@@ -40,9 +45,15 @@ export const createOutlook = (room: number): Outlook => ({
   capacity: new Float64Array(room),
   ratio: new Float64Array(room),
   tipTension: Number.NaN,
+  amplification: new Float64Array(room),
+  dragged: new Float64Array(room),
+  filled: null,
 });
 
-/** Fills `out` for the body lengths of `shape` from station `first` to the tip; O(n). */
+/**
+ * Fills `out` for the body lengths of `shape` from station `first` to the tip. O(n), but only what the last update of the
+ * arms changed when the conditions are the ones `out` was filled for.
+ */
 export const computeOutlook = (
   shape: SampledShape,
   arms: Arms,
@@ -51,28 +62,67 @@ export const computeOutlook = (
   first = 0,
 ): Outlook => {
   makeRoom(out, shape.count);
+  const lieFrom = staleLie(out, arms, pull, shape.count);
+  fillLie(out, shape, pull.body.friction, lieFrom);
+  fillForces(out, shape, arms, pull, Math.max(first, samePull(out.filled?.pull, pull) ? lieFrom : 0));
+  out.count = shape.count;
+  out.tipTension = tipTensionOf(pull);
+  // A partly filled outlook must not pass for a whole one.
+  out.filled = first === 0 ? { arms, revision: arms.revision, pull } : null;
+  return out;
+};
+
+/** First station of which `out` does not know how it lies now. */
+const staleLie = (out: Outlook, arms: Arms, pull: PullConditions, count: number): number => {
+  const { filled } = out;
+  if (filled === null || filled.arms !== arms || filled.pull.body !== pull.body) return 0;
+  if (filled.revision === arms.revision) return count;
+  return filled.revision === arms.revision - 1 ? arms.changedFrom : 0;
+};
+
+const samePull = (a: PullConditions | undefined, b: PullConditions): boolean =>
+  a !== undefined &&
+  a.body === b.body &&
+  a.pressure === b.pressure &&
+  a.tipSpeed === b.tipSpeed &&
+  a.excess === b.excess;
+
+const fillLie = (out: Outlook, shape: SampledShape, friction: number, from: number): void => {
+  const { s, bend, count } = shape;
+  const { amplification, dragged } = out;
+  for (let j = from; j < count; j++) {
+    amplification[j] = capstan(friction, bend[j]!);
+    dragged[j] =
+      j === 0 ? 0 : dragged[j - 1]! + amplifiedLength(friction, bend[j - 1]!, bend[j]!, s[j]! - s[j - 1]!);
+  }
+};
+
+const tipTensionOf = ({ body, pressure, tipSpeed }: PullConditions): number =>
+  inversionTension(area(body), pressure, body.inversion, tipSpeed);
+
+const fillForces = (
+  out: Outlook,
+  shape: SampledShape,
+  arms: Arms,
+  pull: PullConditions,
+  from: number,
+): void => {
   const { body } = pull;
-  const A = area(body);
-  const PA = pull.pressure * A;
+  const PA = pull.pressure * area(body);
   const EI = bendingStiffness(body);
   const S = shearStiffness(body, pull.pressure);
   const drag = body.friction * body.tailWeight;
-  const tipTension = inversionTension(A, pull.pressure, body.inversion, pull.tipSpeed);
-  let dragged = pull.excess;
+  const tipTension = tipTensionOf(pull);
+  const floor = body.eccentricityFloor * body.radius;
+  const { setback, gravity } = arms.holding;
   let u = Math.PI;
-  for (let j = 0; j < shape.count; j++) {
-    const s = shape.s[j]!;
-    if (j > 0) {
-      const before = shape.s[j - 1]!;
-      dragged += amplifiedLength(body.friction, shape.bend[j - 1]!, shape.bend[j]!, s - before);
-    }
-    if (j < first) continue;
-    const lifted = body.tailWeight * depthBelowBase(shape, j, arms.holding.gravity.direction);
-    const tension = tipTension * capstan(body.friction, shape.bend[j]!) + drag * dragged + lifted;
-    const L = s + pull.excess;
-    u = setbackRoot(EI, S, L, arms.holding.setback, u);
+  for (let j = from; j < shape.count; j++) {
+    const lifted = body.tailWeight * depthBelowBase(shape, j, gravity.direction);
+    const tension = tipTension * out.amplification[j]! + drag * (pull.excess + out.dragged[j]!) + lifted;
+    const L = shape.s[j]! + pull.excess;
+    u = setbackRoot(EI, S, L, setback, u);
     const F_c = columnLoadOf(u, EI, S, L);
-    const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, body.eccentricityFloor * body.radius);
+    const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, floor);
     out.baseTension[j] = tension;
     out.columnLoad[j] = F_c;
     // A body of no length cannot buckle: its wall is all clamp.
@@ -80,9 +130,6 @@ export const computeOutlook = (
       L === 0 ? PA : capacity(F_c, PA, body.radius, arm, arms.moment[j]!, body.collapseFraction);
     out.ratio[j] = L === 0 ? Number.POSITIVE_INFINITY : out.capacity[j]! / tension;
   }
-  out.count = shape.count;
-  out.tipTension = tipTension;
-  return out;
 };
 
 /** How far a station lies below the base [m]; above it counts as zero: what the tail's weight helps is not relied on. */
@@ -129,8 +176,16 @@ export const forcesAt = (shape: SampledShape, arms: Arms, outlook: Outlook, stat
 const makeRoom = (out: Outlook, count: number): void => {
   if (out.ratio.length >= count) return;
   const room = Math.max(count, 2 * out.ratio.length);
-  out.baseTension = new Float64Array(room);
-  out.columnLoad = new Float64Array(room);
-  out.capacity = new Float64Array(room);
-  out.ratio = new Float64Array(room);
+  for (const part of [
+    'baseTension',
+    'columnLoad',
+    'capacity',
+    'ratio',
+    'amplification',
+    'dragged',
+  ] as const) {
+    const next = new Float64Array(room);
+    next.set(out[part]);
+    out[part] = next;
+  }
 };

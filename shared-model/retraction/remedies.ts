@@ -136,7 +136,7 @@ const firstStationFrom = (shape: SampledShape, length: number): number => {
 
 /** The longest body length up to which this shape can be pulled all the way to the base, by the outlooks just made. */
 const shorterRemedy = (shape: SampledShape, margin: number, space: JudgeSpace): Remedy | null => {
-  const outlooks = [space.nominal, space.low, space.high];
+  const outlooks = [space.low, space.high];
   let value = 0;
   for (let j = 0; j < shape.count && outlooks.every((outlook) => outlook.ratio[j]! >= margin); j++)
     value = shape.s[j]!;

@@ -12,6 +12,7 @@ import {
   subtract,
   type Vec3,
 } from '../../../shared-model/shape/vector.ts';
+import { WINDINGS } from '../shape/windings.ts';
 
 const R = 0.04;
 const arcs = fc.array(
@@ -111,6 +112,89 @@ describe('the arms of a body', () => {
       expect(kept.count).toBe(fresh.count);
       for (const part of ['tangent', 'chord', 'moment'] as const)
         expect(kept[part].subarray(0, kept.count)).toEqual(fresh[part].subarray(0, fresh.count));
+    }
+  });
+
+  it('searched over the hierarchy are those of one pass over all pairs, to 1e-9 of the radius', () => {
+    const long = fc.array(
+      fc.record({
+        length: fc.double({ min: 0.01, max: 12, noNaN: true }),
+        curvature: fc.oneof(fc.constant(0), fc.double({ min: -3, max: 3, noNaN: true })),
+        plane: fc.double({ min: -4, max: 4, noNaN: true }),
+      }),
+      { minLength: 1, maxLength: 6 },
+    );
+    fc.assert(
+      fc.property(long, (segments) => {
+        const shape = sampleSegments(segments, 0.02);
+        const arms = createArms(1, { setback: 0.06, gravity: WEIGHTLESS });
+        updateArms(arms, shape, 0);
+        for (let j = 0; j < shape.count; j++) {
+          expect(Math.abs(arms.tangent[j]! - tangentArm(shape, j))).toBeLessThanOrEqual(1e-9 * R);
+          expect(Math.abs(arms.chord[j]! - chordArm(shape, j, 0.06))).toBeLessThanOrEqual(1e-9 * R);
+        }
+      }),
+      { numRuns: 40 },
+    );
+  });
+
+  it.each(Object.keys(WINDINGS))('of 100 m at 1 cm, %s, are those of one pass over all pairs', (name) => {
+    const shape = WINDINGS[name]!(100, 0.01);
+    const arms = createArms(1, { setback: 0.06, gravity: WEIGHTLESS });
+    updateArms(arms, shape, 0);
+    expect(shape.count).toBe(10_001);
+    for (let j = 0; j < shape.count; j += 7) {
+      expect(Math.abs(arms.tangent[j]! - tangentArm(shape, j))).toBeLessThanOrEqual(1e-9 * R);
+      expect(Math.abs(arms.chord[j]! - chordArm(shape, j, 0.06))).toBeLessThanOrEqual(1e-9 * R);
+    }
+  });
+
+  it('kept while a body grows and comes back many times are those worked out afresh', () => {
+    const free = fc.record({
+      laid: fc.integer({ min: 0, max: 300 }),
+      bent: fc.double({ min: -2, max: 2, noNaN: true }),
+    });
+    fc.assert(
+      fc.property(fc.array(free, { minLength: 2, maxLength: 12 }), (steps) => {
+        const kept = createArms(4, { setback: 0.05, gravity: WEIGHTLESS });
+        let before = 0;
+        for (const { laid, bent } of steps) {
+          const shape = sampleSegments(
+            [
+              { length: laid / 100, curvature: 0.7, plane: 0.4 },
+              { length: 0.6, curvature: bent, plane: 1 },
+            ],
+            // A hair above a centimetre, so that rounding adds no station.
+            0.010001,
+          );
+          updateArms(kept, shape, Math.min(before, laid) + 1);
+          before = laid;
+          const fresh = createArms(shape.count, kept.holding);
+          updateArms(fresh, shape, 0);
+          for (const part of ['tangent', 'chord'] as const)
+            for (let j = 0; j < shape.count; j++)
+              expect(Math.abs(kept[part][j]! - fresh[part][j]!)).toBeLessThanOrEqual(1e-9 * R);
+        }
+      }),
+      { numRuns: 30 },
+    );
+  });
+
+  it('searched over the hierarchy are not a number where a station is not, wherever it is', () => {
+    for (const [station, value] of [
+      [0, Number.NaN],
+      [1, Number.NaN],
+      [16, Number.NaN],
+      [40, Number.POSITIVE_INFINITY],
+      [99, Number.NaN],
+      [100, Number.NaN],
+    ] as const) {
+      const shape = sampleSegments([{ length: 1, curvature: 1, plane: 0 }], 0.01);
+      shape.position[3 * station] = value;
+      const arms = createArms(1, { setback: 0.06, gravity: WEIGHTLESS });
+      updateArms(arms, shape, 0);
+      expect(arms.tangent[100]).toBeNaN();
+      expect(arms.chord[100]).toBeNaN();
     }
   });
 
