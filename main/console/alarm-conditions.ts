@@ -1,6 +1,7 @@
 import type { Limits } from '../../shared-model/body/body.ts';
 import type { LinkStatus, RecordingStatus } from '../../shared-model/contract/frame.ts';
 import type { Readings } from '../../shared-model/contract/reading.ts';
+import type { Trip } from '../../shared-model/retraction/pull-watch.ts';
 import type { AlarmDefinition, Condition } from './alarms.ts';
 
 /** Every alarm of the console: what follows from it and what to do. Kept as a table so that the manual can print it. */
@@ -45,6 +46,31 @@ export const ALARMS = {
     onDelay: 0.2,
     offDelay: 2,
   },
+  foldSuspected: {
+    id: 'fold-suspected',
+    priority: 'high',
+    consequence: 'The tip may be anywhere; body length is not to be relied on. Pulling is refused.',
+    action:
+      'Hold still and look at the picture. Lower body pressure slowly. On Drive, say so once the body lies as before.',
+    onDelay: 0,
+    offDelay: 0,
+  },
+  spoolDrive: {
+    id: 'spool-drive',
+    priority: 'medium',
+    consequence: 'The press was ended; tail and tip stand.',
+    action: 'Check the spool motor, its brake and the encoder; then press again.',
+    onDelay: 0,
+    offDelay: 0,
+  },
+  retractorDrive: {
+    id: 'retractor-drive',
+    priority: 'medium',
+    consequence: 'The press was ended; tail and tip stand.',
+    action: 'Check the tip retractor; then press again.',
+    onDelay: 0,
+    offDelay: 0,
+  },
   signalBad: {
     id: 'signal-bad',
     priority: 'medium',
@@ -69,6 +95,7 @@ export interface AlarmInputs {
   readonly limits: Limits;
   readonly emergencyStopWired: boolean;
   readonly recording: RecordingStatus;
+  readonly watch: { readonly trip: Trip | null; readonly foldSuspected: Trip | null };
 }
 
 /** The conditions that hold now. A reading that is not good counts as bad, never as normal. */
@@ -87,6 +114,10 @@ export const alarmConditions = (inputs: AlarmInputs): Condition[] => {
     else if (stop.value !== 0)
       conditions.push({ ...ALARMS.emergencyStop, cause: 'The wired emergency stop is pressed.' });
   }
+  const { trip, foldSuspected } = inputs.watch;
+  if (foldSuspected !== null) conditions.push({ ...ALARMS.foldSuspected, cause: foldSuspected.text });
+  if (trip?.code === 'spool-drive') conditions.push({ ...ALARMS.spoolDrive, cause: trip.text });
+  if (trip?.code === 'retractor-drive') conditions.push({ ...ALARMS.retractorDrive, cause: trip.text });
   const pressure = readings.body_pressure;
   if (pressure?.quality === 'good' && !(pressure.value <= 1.1 * limits.bodyPressureMax))
     conditions.push({

@@ -15,6 +15,7 @@ import {
 } from '../../shared-model/contract/request.ts';
 import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
 import { type Judgement, PermittedDrive } from '../../shared-model/retraction/interlock.ts';
+import { clearFold, rearmWatch, stepWatch, WATCHING } from '../../shared-model/retraction/pull-watch.ts';
 import type { WayBack } from '../../shared-model/retraction/verdict.ts';
 import { bodyLine } from '../../shared-model/shape/body-line.ts';
 import { createEstimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
@@ -42,7 +43,16 @@ import { answerRequest, type RequestContext } from './requests.ts';
 import { sampleOf } from './sample.ts';
 import { NO_RAMPS, stepRamps } from './setpoint-ramps.ts';
 import { createTipRetractor, retractorStatus } from './tip-retractor.ts';
-import { createWayBackJudge, followShape, judgeTo, outlookLine } from './way-back.ts';
+import { watchedTick } from './watched-tick.ts';
+import {
+  createWayBackJudge,
+  followShape,
+  growthPressureOf,
+  judgeTo,
+  outlookLine,
+  type Surroundings,
+  standingOf,
+} from './way-back.ts';
 
 /** What the console is made of; everything that touches the world comes in here. */
 export interface ConsoleParts {
@@ -89,6 +99,10 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   let estimate = createEstimate();
   let ramps = NO_RAMPS;
   let retractor = createTipRetractor(rig.reads.tip_retractor_attached !== undefined);
+  let watch = WATCHING;
+  /** What the rig has last confirmed. */
+  let driven: PermittedDrive | null = null;
+  let attachedBefore = false;
   let board = EMPTY_BOARD;
   let readings: Readings = {};
   let confirmed = false;
@@ -139,6 +153,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
     bodyChanged ||= estimate.changedFrom < estimate.path.count;
     followShape(judge, estimate);
+    noteTrips(attached, now);
     const around = { estimate, readings, retractorAttached: attached, now };
     const wayBack = judgeTo(judge, rig, around, 0);
     const stepped = stepBacktracking(
@@ -151,16 +166,17 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     backtracking = stepped.backtracking;
     for (const event of stepped.events) void mission.append(event);
     const verdict = backtracking === null ? wayBack : judgeTo(judge, rig, around, backtracking.length);
-    const judged = decide(stepped.wish, verdict, attached, now, dt);
+    const judged = decide(stepped.wish, verdict, around, dt);
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
+    driven = confirmed ? judged.drive : null;
     notes.motion(estimate.frame, judged.tipSpeed, now);
     notes.refusal(judged, verdict, lease, estimate.frame?.length ?? null);
     noteAlarms(now);
     recorder.sample(
       sampleOf({ readings, estimate: estimate.frame, wayBack, wish: wishOf(lease, now), judged, now }),
     );
-    publish(judged, wayBack, now);
+    publish(judged, wayBack, around);
   };
 
   const remainingTo = (length: number): number | null => {
@@ -168,7 +184,22 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     return Number.isFinite(remaining) ? remaining : null;
   };
 
-  const decide = (wish: Wish, wayBack: WayBack, attached: boolean, now: number, dt: number): Judgement => {
+  /** A drive that does not follow, a suspected fold or a grip that changed ends the press. */
+  const noteTrips = (attached: boolean, now: number): void => {
+    const before = watch;
+    watch = stepWatch(watch, watchedTick(rig, readings, estimate, attached, driven, now));
+    const { trip } = watch;
+    if (trip !== null && trip !== before.trip) {
+      disarm(trip.text);
+      notes.tripped(trip, estimate.frame?.length ?? null);
+    }
+    if (attached !== attachedBefore && lease.state === 'held')
+      disarm(attached ? 'The tip retractor took hold.' : 'The tip retractor let go, or its signal is gone.');
+    attachedBefore = attached;
+  };
+
+  const decide = (wish: Wish, wayBack: WayBack, around: Surroundings, dt: number): Judgement => {
+    const { now, retractorAttached } = around;
     const stepped = stepRamps(
       ramps,
       wish,
@@ -192,15 +223,23 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       described,
       body: estimate.frame,
       estimateReasons: estimate.reasons,
+      shapeAt: estimate.at,
       wayBack,
       judgedAt: now,
       remaining,
       approachSpeed: remaining === null ? Number.NaN : approachSpeed(remaining),
-      tipRetractorAttached: attached,
+      watch,
+      tipRetractorAttached: retractorAttached,
+      tipRetractorState: retractorStatus(retractor, readings, now, rig.limits.readingAge).state,
       hasRetractorDrive,
       grip: rig.writes.tip_retractor_grip === undefined ? null : retractor.commanded,
       musclePressures: stepped.musclePressures,
       bodyPressure: stepped.ramps.bodyPressure,
+      bodyPressureBefore:
+        ramps.bodyPressure ?? goodValue(readings.body_pressure, now, rig.limits.readingAge) ?? null,
+      growthPressure: wish.motion.kind === 'grow' ? growthPressureOf(estimate, rig) : null,
+      hoopStrength: rig.body.hoopStrength,
+      bodyRadius: rig.body.radius,
     });
     // A ramp that was refused must not run on behind the refusal.
     if (judged.refusal === null) ramps = stepped.ramps;
@@ -217,14 +256,15 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   };
 
   const noteAlarms = (now: number): void => {
-    const inputs = { link: link.status(), readings, limits: rig.limits, recording: recorder.status() };
+    const inputs = { link: link.status(), readings, limits: rig.limits, recording: recorder.status(), watch };
     const conditions = alarmConditions({ ...inputs, emergencyStopWired: rig.emergencyStopWired });
     const stepped = stepAlarms(board, conditions, now);
     board = stepped.board;
     notes.alarms(stepped.changes);
   };
 
-  const publish = (judged: Judgement, wayBack: WayBack, now: number): void => {
+  const publish = (judged: Judgement, wayBack: WayBack, around: Surroundings): void => {
+    const { now } = around;
     const withBody = sendAll || (bodyChanged && now - bodyAt >= BODY_EVERY);
     const withOutlook = sendAll || now - outlookAt >= OUTLOOK_EVERY;
     if (withBody) [bodyAt, bodyChanged] = [now, false];
@@ -256,10 +296,13 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
               remaining: remainingTo(backtracking.length) ?? 0,
               arrived: backtracking.arrived,
             },
+      foldSuspected: watch.foldSuspected,
       alarms: listAlarms(board),
       recording: recorder.status(),
       ...(withBody ? { body: bodyLine(estimate.path) } : {}),
-      ...(withOutlook ? { outlook: outlookLine(judge, estimate, rig) } : {}),
+      ...(withOutlook
+        ? { outlook: outlookLine(judge, estimate, rig), standing: standingOf(judge, rig, around) }
+        : {}),
     };
     broadcast(frame);
   };
@@ -305,6 +348,11 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     setRetractor: (next) => {
       retractor = next;
     },
+    clearFold: () => {
+      const was = watch.foldSuspected !== null;
+      watch = clearFold(watch);
+      return was;
+    },
     acknowledge: (id) => {
       const stepped = acknowledgeAlarm(board, id);
       board = stepped.board;
@@ -314,6 +362,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     reconnect: () => {
       disarm('The link is opened again.');
       estimate = createEstimate();
+      watch = { ...WATCHING, foldSuspected: watch.foldSuspected };
       judge.arms.count = 0;
       link.reconnect();
     },
@@ -328,7 +377,9 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       if (before.state === 'held' && lease.state !== 'held') stopNow();
       return { ok: true };
     }
+    const before = lease;
     lease = renewLease(lease, { client, press: request.press, seq: request.seq, wish: request.wish }, now);
+    if (lease.state === 'held' && before.state !== 'held') watch = rearmWatch(watch);
     if (lease.state !== 'held') {
       if (lease.state === 'burnt') stopNow();
       return {

@@ -1,6 +1,7 @@
 import type { EstimateFrame, LinkStatus, TipRetractorStatus } from '../../shared-model/contract/frame.ts';
 import type { UnstampedEvent } from '../../shared-model/mission/event.ts';
 import type { Judgement } from '../../shared-model/retraction/interlock.ts';
+import type { Trip } from '../../shared-model/retraction/pull-watch.ts';
 import type { WayBack } from '../../shared-model/retraction/verdict.ts';
 import type { AlarmChange } from './alarms.ts';
 import type { Lease } from './lease.ts';
@@ -13,6 +14,7 @@ export interface MissionNotes {
   /** A state that cannot be read is no news. */
   retractor(status: TipRetractorStatus): void;
   motion(estimate: EstimateFrame | null, tipSpeed: number, now: number): void;
+  tripped(trip: Trip, length: number | null): void;
   refusal(judged: Judgement, wayBack: WayBack, lease: Lease, length: number | null): void;
   alarms(changes: readonly AlarmChange[]): void;
 }
@@ -47,6 +49,7 @@ export const createMissionNotes = (append: (event: UnstampedEvent) => void): Mis
       markedLength = estimate.length;
       append(due);
     },
+    tripped: ({ code, text }, length) => append({ kind: 'tripped', code, text, length }),
     // One record a press and cause, not one a tick.
     refusal: (judged, wayBack, lease, length) => {
       const { refusal } = judged;

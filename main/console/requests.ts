@@ -22,6 +22,8 @@ export interface RequestContext {
   isMoving(): boolean;
   retractor(): TipRetractor;
   setRetractor(next: TipRetractor): void;
+  /** Whether a fold was suspected. */
+  clearFold(): boolean;
   acknowledge(alarm: string): boolean;
   reconnect(): void;
   now(): number;
@@ -41,6 +43,8 @@ export const answerRequest = async (request: DeskRequest, context: RequestContex
       return logWaypoint(request, context);
     case 'set-tip-retractor':
       return setTipRetractor(request, context);
+    case 'clear-fold':
+      return clearFold(request, context);
     case 'acknowledge-alarm':
       return context.acknowledge(request.alarm)
         ? { ok: true }
@@ -163,6 +167,13 @@ const setTipRetractor = (request: Request<'set-tip-retractor'>, context: Request
     );
   context.setRetractor({ ...retractor, declared: request.attached });
   return { ok: true };
+};
+
+const clearFold = async (request: Request<'clear-fold'>, context: RequestContext): Promise<Answer> => {
+  if (!request.confirmed)
+    return no('confirm', 'Confirm that the picture shows the body lying as before, and where the tip is.');
+  if (!context.clearFold()) return no('no-fold', 'No fold is suspected.');
+  return acknowledged(context.mission.append({ kind: 'fold-cleared' }), {});
 };
 
 const listed = async (missionsDir: string): Promise<Answer> => {

@@ -1,5 +1,6 @@
 import type { OutlookLine } from '../../shared-model/contract/frame.ts';
 import { goodValue, type Readings } from '../../shared-model/contract/reading.ts';
+import { growthReserve } from '../../shared-model/mechanics/growth-reserve.ts';
 import { type Arms, createArms, type Holding, updateArms } from '../../shared-model/retraction/arms.ts';
 import {
   createJudgeSpace,
@@ -8,6 +9,7 @@ import {
   judgeWayBack,
 } from '../../shared-model/retraction/judge.ts';
 import { findRemedies } from '../../shared-model/retraction/remedies.ts';
+import { judgeStanding, type Standing } from '../../shared-model/retraction/standing.ts';
 import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
 import type { WayBackInput } from '../../shared-model/retraction/way-back-input.ts';
 import type { Estimate } from '../../shared-model/shape/estimate.ts';
@@ -121,6 +123,39 @@ const heldTension = (readings: Readings, now: number, age: number): number | nul
   const tension = goodValue(readings.tail_tension, now, age);
   return tension === undefined ? null : Math.max(0, tension);
 };
+
+/** How the body is loaded while it is held or grown; null while shape or pressure is not known. */
+export const standingOf = (
+  judge: WayBackJudge,
+  rig: RigDescription,
+  around: Surroundings,
+): Standing | null => {
+  const { shape, pressure, pressureBand } = inputOf(judge, rig, around, 0);
+  if (shape === null || pressure === null) return null;
+  return judgeStanding({
+    shape,
+    arms: judge.arms,
+    body: rig.body,
+    pressure,
+    pressureBand,
+    pressureMin: rig.limits.bodyPressureMin,
+    pressureMax: rig.limits.bodyPressureMax,
+    tipSpeed: rig.limits.tipSpeed,
+    margin: defaultMargin(rig.body),
+    tension: goodValue(around.readings.tail_tension, around.now, rig.limits.readingAge),
+  });
+};
+
+/** Body pressure that growth takes at rest, at this length and shape [Pa]; null while the shape is not known. */
+export const growthPressureOf = (estimate: Estimate, rig: RigDescription): number | null =>
+  estimate.frame === null
+    ? null
+    : growthReserve(estimate.path, {
+        body: rig.body,
+        supply: rig.limits.bodyPressureMax,
+        tipSpeed: 0,
+        holdBack: 0,
+      }).needed;
 
 /** The last judgement to the base as a chart, thinned. */
 export const outlookLine = (judge: WayBackJudge, estimate: Estimate, rig: RigDescription): OutlookLine => {

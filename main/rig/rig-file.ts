@@ -264,6 +264,7 @@ const bodyOf = (body: RigEntry['body']): BodyDescription => ({
   guideSetback: body.guide_setback_mm / 1000,
   collapseFraction: body.collapse_fraction,
   eccentricityFloor: body.eccentricity_floor,
+  hoopStrength: body.hoop_strength_kN_per_m === undefined ? null : body.hoop_strength_kN_per_m * 1000,
   measured: body.measured,
   freeEnd: body.free_end_m ?? Number.POSITIVE_INFINITY,
   onGround: body.on_ground,

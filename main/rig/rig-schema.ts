@@ -89,6 +89,7 @@ export const rigSchema = z.strictObject({
     guide_setback_mm: notNegative,
     collapse_fraction: z.number().gt(0).max(1).default(0.8),
     eccentricity_floor: notNegative.default(0.1),
+    hoop_strength_kN_per_m: positive.optional(),
     measured: z.array(z.enum(['E', 'G', 'inversionYield', 'friction'])).default([]),
     free_end_m: positive.optional(),
     on_ground: z.boolean(),

@@ -21,6 +21,8 @@ export const FAULTS = [
   'leak',
   'motor-stall',
   'retractor-loss',
+  'retractor-stall',
+  'weak-wall',
   'emergency-stop',
   'heartbeat-ignored',
 ] as const;
@@ -123,6 +125,8 @@ export const createBuiltInRig = (
       plant.faults.leak = faults.has('leak');
       plant.faults.motorStall = faults.has('motor-stall');
       plant.faults.retractorLost = faults.has('retractor-loss');
+      plant.faults.retractorStall = faults.has('retractor-stall');
+      plant.faults.weakWall = faults.has('weak-wall');
       plant.faults.emergencyStop = faults.has('emergency-stop');
       if (name === 'unplug')
         line?.lose(

@@ -17,6 +17,9 @@ export interface PlantFaults {
   leak: boolean;
   motorStall: boolean;
   retractorLost: boolean;
+  retractorStall: boolean;
+  /** The wall folds at a fraction of what it should. */
+  weakWall: boolean;
   emergencyStop: boolean;
 }
 
@@ -62,6 +65,8 @@ const SPOOL_ACCELERATION = 1.5;
 const RETRACTOR_ACCELERATION = 0.8;
 /** Stiffness of the tail when it is pulled taut against a gripping retractor [N/m]. */
 const TAIL_STIFFNESS = 400;
+/** Share of its strength that a weak wall keeps. */
+const WEAK_WALL = 0.5;
 
 export const createPlant = (parameters: PlantParameters): Plant => ({
   setpoints: {
@@ -71,7 +76,14 @@ export const createPlant = (parameters: PlantParameters): Plant => ({
     musclePressures: parameters.muscleAngles.map(() => 0),
     grip: false,
   },
-  faults: { leak: false, motorStall: false, retractorLost: false, emergencyStop: false },
+  faults: {
+    leak: false,
+    motorStall: false,
+    retractorLost: false,
+    retractorStall: false,
+    weakWall: false,
+    emergencyStop: false,
+  },
   time: 0,
   pressure: START_PRESSURE,
   spoolSpeed: 0,
@@ -137,7 +149,7 @@ const stepMotors = (plant: Plant, dt: number): void => {
   const { setpoints, faults } = plant;
   const stopped = faults.emergencyStop;
   const spool = stopped || faults.motorStall ? 0 : setpoints.spoolSpeed;
-  const retractor = stopped || !plant.gripped ? 0 : setpoints.retractorSpeed;
+  const retractor = stopped || faults.retractorStall || !plant.gripped ? 0 : setpoints.retractorSpeed;
   plant.spoolSpeed = approach(plant.spoolSpeed, spool, SPOOL_ACCELERATION * dt);
   plant.retractorSpeed = approach(plant.retractorSpeed, retractor, RETRACTOR_ACCELERATION * dt);
 };
@@ -196,7 +208,8 @@ const stepPulled = (plant: Plant, p: PlantParameters, state: TrueState, dt: numb
     return;
   }
   const needed = trueInversionTension(p, state, -plant.spoolSpeed / 2);
-  if (plant.folded > 0 || needed > trueFoldingLoad(p, state)) {
+  const bears = (plant.faults.weakWall ? WEAK_WALL : 1) * trueFoldingLoad(p, state);
+  if (plant.folded > 0 || needed > bears) {
     plant.folded += taken;
     plant.tension = settle(plant.tension, 0.3 * needed * Math.exp(-plant.folded / 0.05) + 4, dt);
     return;

@@ -58,6 +58,8 @@ const FAULTS: readonly (readonly [Fault, string])[] = [
   ['leak', 'Leak in the body'],
   ['motor-stall', 'Spool motor stalls'],
   ['retractor-loss', 'Retractor loses its grip'],
+  ['retractor-stall', 'Retractor motor stalls'],
+  ['weak-wall', 'Wall weaker than measured'],
   ['none', 'End all faults'],
 ];
 

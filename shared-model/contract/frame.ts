@@ -1,5 +1,7 @@
 import type { Limits } from '../body/body.ts';
 import type { MissionEvent } from '../mission/event.ts';
+import type { Trip } from '../retraction/pull-watch.ts';
+import type { Standing } from '../retraction/standing.ts';
 import type { Refusal, WayBack } from '../retraction/verdict.ts';
 import type { Pose, Vec3 } from '../shape/vector.ts';
 import type { Readings } from './reading.ts';
@@ -110,6 +112,8 @@ export interface ConsoleFrame {
   /** Why what is asked for is not done; null while nothing is refused. */
   readonly refusal: Refusal | null;
   readonly tipRetractor: TipRetractorStatus;
+  /** A fold of the body is suspected; pulling is refused until a person has looked. */
+  readonly foldSuspected: Trip | null;
   /** Set while backtracking: distance still to go back [m]. */
   readonly backtrack: {
     readonly target: string;
@@ -120,6 +124,8 @@ export interface ConsoleFrame {
   readonly recording: RecordingStatus;
   readonly body?: BodyLine;
   readonly outlook?: OutlookLine;
+  /** How the body is loaded while it is held or grown; null while that cannot be judged. */
+  readonly standing?: Standing | null;
 }
 
 /** A stretch of passage, for drawing what the built-in rig's camera sees. */

@@ -58,6 +58,8 @@ export const requestSchema = z.discriminatedUnion('kind', [
   }),
   /** Engage or release the tip retractor where the rig can, otherwise declare it; `confirmed` is the second step. */
   z.strictObject({ kind: z.literal('set-tip-retractor'), attached: z.boolean(), confirmed: z.boolean() }),
+  /** After a suspected fold: a person looked and says that the body lies as before; `confirmed` is the second step. */
+  z.strictObject({ kind: z.literal('clear-fold'), confirmed: z.boolean() }),
   z.strictObject({ kind: z.literal('acknowledge-alarm'), alarm: id }),
   /** Ask for the wheel when another window drives. Disarms. */
   z.strictObject({ kind: z.literal('take-over') }),
@@ -74,6 +76,8 @@ export const requestSchema = z.discriminatedUnion('kind', [
       'leak',
       'motor-stall',
       'retractor-loss',
+      'retractor-stall',
+      'weak-wall',
       'none',
     ]),
   }),

@@ -72,6 +72,16 @@ export const missionEventSchema = z.discriminatedUnion('kind', [
     state: z.enum(['attached', 'absent']),
     source: z.enum(['sensed', 'declared']),
   }),
+  /** Something went wrong under way: a fold of the body is suspected, or a drive does not follow. */
+  z.strictObject({
+    ...stamp,
+    kind: z.literal('tripped'),
+    code: z.string(),
+    text: z.string(),
+    length: z.number().nullable(),
+  }),
+  /** A person looked after a suspected fold and says that the body lies as before. */
+  z.strictObject({ ...stamp, kind: z.literal('fold-cleared') }),
   z.strictObject({
     ...stamp,
     kind: z.literal('backtrack-started'),

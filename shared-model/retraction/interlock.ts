@@ -1,6 +1,16 @@
 import { goodValue, type Readings } from '../contract/reading.ts';
+import { coordinate, easeOff } from './coordination.ts';
 import type { DriveRequest } from './drive-request.ts';
-import { bodyReasons, commonReasons, growReasons, kPa, pullReasons, requireGood } from './reasons.ts';
+import {
+  bodyReasons,
+  commonReasons,
+  growReasons,
+  hoopReasons,
+  kPa,
+  pullReasons,
+  rampReasons,
+  requireGood,
+} from './reasons.ts';
 import type { Refusal } from './verdict.ts';
 
 /** Setpoints for one tick. `null` leaves the rig's present setpoint as it is. SI. */
@@ -108,6 +118,7 @@ const judgeMotion = (request: DriveRequest): MotionJudgement => {
   if (motion.kind === 'still') return STAY;
   const reasons = [...commonReasons(request), ...bodyReasons(request)];
   if (motion.kind === 'grow') {
+    if (reasons.length === 0 && canEase(request)) return easing(request);
     reasons.push(...growReasons(request));
     if (reasons.length > 0) return { ...STAY, refusal: { motion: 'grow', reasons } };
     const tipSpeed = Math.min(request.wish.tipSpeed, request.limits.tipSpeed);
@@ -118,29 +129,42 @@ const judgeMotion = (request: DriveRequest): MotionJudgement => {
   return pull(request);
 };
 
-/** Loose tail that the spool leaves while the retractor pulls [m]. */
-const SLACK_KEPT = 0.05;
-
 /** The tail moves twice as fast as the tip; a retractor inverts at the tip and the spool only takes up what comes. */
 const pull = (request: DriveRequest): MotionJudgement => {
   const speed = Math.min(request.wish.tipSpeed, request.limits.tipSpeed, request.approachSpeed);
   if (request.wayBack.kind !== 'by-tip-retractor')
     return { spoolSpeed: -2 * speed, retractorSpeed: 0, tipSpeed: -speed, refusal: null };
-  const slack = request.body?.tailSlack ?? 0;
-  const held = goodValue(request.readings.tail_tension, request.now, request.limits.readingAge);
-  const { heldMax } = request.wayBack;
-  const tensionShare = held === undefined ? 0 : Math.max(0, held / heldMax);
-  // A little tail is kept loose, so that the spool never pulls against the grip; rising tension slows it further.
-  const takeUp = Math.max(0, 1 + 3 * (slack - SLACK_KEPT) - Math.max(0, 2 * tensionShare - 1));
-  // The tip waits while more tail lies loose than the rig allows, so that no loop can form.
-  const tip = slack <= request.limits.tailSlackMax ? speed : 0;
-  return {
-    spoolSpeed: -2 * speed * Math.min(takeUp, 1.5),
-    retractorSpeed: tip,
-    tipSpeed: -tip,
-    refusal: null,
-  };
+  const { tip, spool } = coordinate({ speed, ...tailOf(request) });
+  return { spoolSpeed: spool, retractorSpeed: tip, tipSpeed: -tip, refusal: null };
 };
+
+/** The tail at the spool as the coordination needs it. */
+const tailOf = ({ body, readings, now, limits, wayBack }: DriveRequest) => ({
+  tipSpeed: -(body?.tipSpeed ?? Number.NaN),
+  slack: body?.tailSlack ?? Number.NaN,
+  held: goodValue(readings.tail_tension, now, limits.readingAge),
+  // Where the verdict gives none, whatever is held is too much.
+  heldMax: wayBack.kind === 'by-tip-retractor' ? wayBack.heldMax : 0,
+  slackMax: limits.tailSlackMax,
+});
+
+/** Letting tail out while the retractor grips turns nothing; it only takes load off the body. */
+const canEase = (request: DriveRequest): boolean => {
+  const { wayBack } = request;
+  const heldTooHigh =
+    wayBack.kind === 'cannot-judge' &&
+    wayBack.reasons.length > 0 &&
+    wayBack.reasons.every((reason) => reason.code === 'held-tension');
+  return (
+    request.tipRetractorAttached &&
+    (heldTooHigh || wayBack.kind === 'by-tip-retractor') &&
+    easeOff(tailOf(request)) > 0
+  );
+};
+const easing = (request: DriveRequest): MotionJudgement => ({
+  ...STAY,
+  spoolSpeed: easeOff(tailOf(request)),
+});
 
 const judgeSteering = (
   request: DriveRequest,
@@ -175,6 +199,7 @@ const judgePressure = (request: DriveRequest): { value: number | null; refusal: 
       text: `Body pressure ${kPa(wanted)} is outside ${kPa(min)} to ${kPa(max)}.`,
       remedy: 'Stay within the limits of the rig file.',
     });
+  reasons.push(...hoopReasons(request, wanted), ...rampReasons(request, wanted));
   return reasons.length > 0
     ? { value: null, refusal: { motion: 'pressure', reasons } }
     : { value: wanted, refusal: null };

@@ -94,14 +94,17 @@ const judgeRetractor = (
     ]);
   if (!(held >= 0 && held <= heldMax))
     return cannotJudge([
-      {
-        code: 'held-tension',
-        text:
-          held >= 0
-            ? `The spool still holds ${newtons(held)}; the body bears ${newtons(heldMax)} over its whole length.`
-            : 'The tension that the spool holds is not known.',
-        remedy: 'Wait until the spool has eased off, or slacken the tail at the spool.',
-      },
+      held > heldMax
+        ? {
+            code: 'held-tension',
+            text: `The spool still holds ${newtons(held)}; the body bears ${newtons(heldMax)} over its whole length.`,
+            remedy: 'Hold Grow: while the retractor grips it only eases the spool off. Then pull.',
+          }
+        : {
+            code: 'held-unknown',
+            text: 'The tension that the spool holds is not known.',
+            remedy: 'Check the tail tension sensor on the Rig tab.',
+          },
     ]);
   const text = `The tip retractor takes the pull; the spool may hold ${newtons(heldMax)} and holds ${newtons(held)}.`;
   return { kind: 'by-tip-retractor', here, held, heldMax, margin, text };

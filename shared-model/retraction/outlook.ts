@@ -1,6 +1,6 @@
 import type { Body, BodyDescription } from '../body/body.ts';
 import { capacity } from '../mechanics/capacity.ts';
-import { columnLoadOf, setbackRoot } from '../mechanics/column.ts';
+import { columnLoad, columnLoadOf, setbackRoot } from '../mechanics/column.ts';
 import { amplifiedLength, capstan, inversionTension } from '../mechanics/inversion.ts';
 import { area, bendingStiffness, shearStiffness } from '../mechanics/section.ts';
 import type { SampledShape } from '../shape/sampled-shape.ts';
@@ -130,6 +130,17 @@ const fillForces = (
       L === 0 ? PA : capacity(F_c, PA, body.radius, arm, arms.moment[j]!, body.collapseFraction);
     out.ratio[j] = L === 0 ? Number.POSITIVE_INFINITY : out.capacity[j]! / tension;
   }
+};
+
+/** Load that folds the body cut at station j [N], for one pressure: what `computeOutlook` fills in there. */
+export const capacityAt = (shape: SampledShape, arms: Arms, pull: PullConditions, j: number): number => {
+  const { body, pressure, excess } = pull;
+  const PA = pressure * area(body);
+  const L = shape.s[j]! + excess;
+  if (L === 0) return PA;
+  const F_c = columnLoad(bendingStiffness(body), shearStiffness(body, pressure), L, arms.holding.setback);
+  const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, body.eccentricityFloor * body.radius);
+  return capacity(F_c, PA, body.radius, arm, arms.moment[j]!, body.collapseFraction);
 };
 
 /** How far a station lies below the base [m]; above it counts as zero: what the tail's weight helps is not relied on. */

@@ -1,5 +1,6 @@
 import { goodValue, type Reading } from '../contract/reading.ts';
 import type { DriveRequest } from './drive-request.ts';
+import { HOOP_FACTOR } from './standing.ts';
 import type { Reason, WayBack } from './verdict.ts';
 
 /** What every kind of motion needs. */
@@ -36,6 +37,14 @@ export const commonReasons = (request: DriveRequest): Reason[] => {
 /** What growing and pulling need beyond that. */
 export const bodyReasons = (request: DriveRequest): Reason[] => {
   const reasons: Reason[] = [...request.estimateReasons];
+  if (request.watch.trip !== null) reasons.push(request.watch.trip);
+  const age = request.now - request.shapeAt;
+  if (!(age >= 0 && age <= request.limits.readingAge))
+    reasons.push({
+      code: 'shape-old',
+      text: `The shape of the body was last estimated ${Number.isFinite(age) ? `${age.toFixed(1)} s ago` : 'never'}.`,
+      remedy: 'Check tail payout and muscle pressures on the Rig tab.',
+    });
   if (request.body === null) {
     if (reasons.length === 0)
       reasons.push({
@@ -87,12 +96,26 @@ export const growReasons = (request: DriveRequest): Reason[] => {
       text: 'The tip retractor grips the tail; the tip cannot grow.',
       remedy: 'Release the tip retractor, then grow.',
     });
+  if (!(request.growthPressure !== null && Number.isFinite(request.growthPressure)))
+    reasons.push({
+      code: 'growth',
+      text: 'The pressure that growth takes here is not known.',
+      remedy: 'Check the body values in the rig file.',
+    });
+  else if (pressure !== undefined && !(pressure >= request.growthPressure))
+    reasons.push({
+      code: 'growth-stalls',
+      text: `Growth takes ${kPa(request.growthPressure)} here; the body has ${kPa(pressure)}. Tail let out now would lie loose.`,
+      remedy: 'Raise body pressure.',
+    });
   return reasons;
 };
 
 export const pullReasons = (request: DriveRequest): Reason[] => {
   const { wayBack } = request;
-  const reasons: Reason[] = [];
+  const reasons: Reason[] = [...lostGripReasons(request)];
+  const { foldSuspected, trip } = request.watch;
+  if (foldSuspected !== null && foldSuspected !== trip) reasons.push(foldSuspected);
   if (request.remaining === null || !(request.remaining > 0))
     reasons.push({
       code: 'no-way',
@@ -123,6 +146,52 @@ export const pullReasons = (request: DriveRequest): Reason[] => {
   else reasons.push(...basePullReasons(request, wayBack));
   return reasons;
 };
+
+/** A retractor that was told to grip and does not, or does not say so, stops the pull under its own name. */
+const lostGripReasons = ({ grip, tipRetractorState: state }: DriveRequest): Reason[] => {
+  if (grip !== true || state === 'attached') return [];
+  const unread = state === 'unknown';
+  return [
+    {
+      code: unread ? 'retractor-unread' : 'retractor-loose',
+      text: unread
+        ? 'Whether the tip retractor grips cannot be read.'
+        : 'The tip retractor is engaged but does not grip.',
+      remedy: unread
+        ? 'Check its signal on the Rig tab; hold still.'
+        : 'Wait for it to grip, or release it and look at the picture.',
+    },
+  ];
+};
+
+/** The wall against a body pressure: its hoop load stays a factor below what the rig file says it bears. */
+export const hoopReasons = (request: DriveRequest, pressure: number): Reason[] => {
+  const { hoopStrength, bodyRadius } = request;
+  if (hoopStrength === null || pressure * bodyRadius * HOOP_FACTOR <= hoopStrength) return [];
+  return [
+    {
+      code: 'hoop',
+      text: `${kPa(pressure)} would load wall or seam to more than a ${HOOP_FACTOR}th of its strength.`,
+      remedy: `Stay below ${kPa(hoopStrength / (HOOP_FACTOR * bodyRadius))}.`,
+    },
+  ];
+};
+
+/** A setpoint that leaps would fill or vent faster than the rig file allows. */
+export const rampReasons = (request: DriveRequest, pressure: number): Reason[] => {
+  const step = Math.abs(pressure - (request.bodyPressureBefore ?? Number.NaN));
+  if (step <= request.limits.bodyPressureRate * RAMP_TIME + 1) return [];
+  return [
+    {
+      code: 'pressure-ramp',
+      text: `The setpoint would leap to ${kPa(pressure)}.`,
+      remedy: 'Let go, then press and hold again.',
+    },
+  ];
+};
+
+/** Longest time that one step of a ramp may stand for [s]: two ticks. */
+const RAMP_TIME = 0.1;
 
 /** Stands beside the reasons of the verdict, so that one without any reason refuses too. */
 const CANNOT_JUDGE: Reason = {
@@ -173,7 +242,7 @@ const retractorReasons = (
     reasons.push({
       code: 'held-tension',
       text: `The spool still holds ${newtons(wayBack.held)}; the body bears ${newtons(wayBack.heldMax)}.`,
-      remedy: 'Let the spool ease off before pulling.',
+      remedy: 'Hold Grow: while the retractor grips it only eases the spool off. Then pull.',
     });
   return reasons;
 };

@@ -180,6 +180,96 @@ describe('the console, driving the built-in rig in virtual time', () => {
     await bench.close();
   });
 
+  test('suspects the fold of a wall weaker than measured, refuses further pulling, and lets a person rule it out', async () => {
+    const bench = await startBench();
+    await grownTo(bench, 1.4);
+    bench.rig.fault('weak-wall');
+    await bench.hold(RETRACT, () => false, 3);
+    // It folded, since nothing measured said that it would; but by no more than a hand's breadth of tail.
+    expect(bench.rig.truth().folded).toBeGreaterThan(0);
+    expect(bench.rig.truth().folded).toBeLessThan(0.15);
+    expect(bench.frame().foldSuspected?.code).toBe('suspected-fold');
+    expect(bench.frame().alarms.map((alarm) => alarm.id)).toContain('fold-suspected');
+    const folded = bench.rig.truth().folded;
+    await bench.hold(RETRACT, () => false, 3);
+    expect(bench.rig.truth().folded).toBe(folded);
+    const ask = (confirmed: boolean) => bench.console_.request('driver', { kind: 'clear-fold', confirmed });
+    expect(await ask(false)).toMatchObject({ ok: false, code: 'confirm' });
+    expect(bench.frame().foldSuspected).not.toBeNull();
+    expect(await ask(true)).toMatchObject({ ok: true });
+    expect(await ask(true)).toMatchObject({ ok: false, code: 'no-fold' });
+    await bench.run(0.2);
+    expect(bench.frame().foldSuspected).toBeNull();
+    expect(kinds(bench)).toEqual(expect.arrayContaining(['tripped', 'fold-cleared']));
+    await bench.close();
+  });
+
+  test.each([
+    ['motor-stall', GROW, 'spool-drive'],
+    ['motor-stall', RETRACT, 'spool-drive'],
+  ] as const)(
+    'ends a press under the fault "%s" (%o) and says which drive it is',
+    async (fault, wish, code) => {
+      const bench = await startBench();
+      await grownTo(bench, 1);
+      bench.rig.fault(fault);
+      const at = bench.clock.now();
+      await bench.hold(wish, () => false, 3);
+      expect(bench.events.filter((event) => event.kind === 'tripped').map((event) => event.code)).toEqual([
+        code,
+      ]);
+      expect(moving(bench, at + 1.2)).toEqual([]);
+      expect(bench.frame().hold.state).toBe('neutral');
+      bench.rig.fault('none');
+      await bench.hold(wish, () => false, 0.5);
+      expect(bench.frame().foldSuspected).toBeNull();
+      expect(moving(bench, bench.clock.now() - 1.1).length).toBeGreaterThan(3);
+      await bench.close();
+    },
+  );
+
+  test('ends a pull whose retractor motor stalls, both drives at once, and says which it is', async () => {
+    const bench = await startBench();
+    await grownTo(bench, 6);
+    await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
+    await bench.run(3);
+    bench.rig.fault('retractor-stall');
+    const at = bench.clock.now();
+    await bench.hold(RETRACT, () => false, 4);
+    expect(bench.events.find((event) => event.kind === 'tripped')).toMatchObject({ code: 'retractor-drive' });
+    expect(moving(bench, at + 1.5)).toEqual([]);
+    expect(bench.rig.truth().folded).toBe(0);
+    await bench.close();
+  });
+
+  test.each([1, 2, 3, 4, 5])(
+    'comes from 14 m to the base by the retractor without a loop and without pulling on the grip (machine %i)',
+    async (seed) => {
+      const bench = await startBench(seed);
+      await grownTo(bench, 14);
+      await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
+      await bench.run(3);
+      let loose = 0;
+      let tension = 0;
+      await bench.hold(
+        RETRACT,
+        () => {
+          const { payout, length: body } = bench.rig.truth();
+          loose = Math.max(loose, payout - 2 * body);
+          const { tail_tension } = bench.frame().readings;
+          if (tail_tension?.quality === 'good') tension = Math.max(tension, tail_tension.value);
+          return body < 0.1;
+        },
+        120,
+      );
+      expect(bench.rig.truth().length).toBeLessThan(0.1);
+      expect(loose).toBeLessThan(0.35);
+      expect(tension).toBeLessThan(30);
+      expect(bench.rig.truth().folded).toBe(0);
+      await bench.close();
+    },
+  );
+
   test.each(['stuck-pressure', 'dead-unit', 'bit-errors', 'emergency-stop'] as const)(
     'never folds the body nor moves unheld under the fault "%s"',
     async (fault) => {

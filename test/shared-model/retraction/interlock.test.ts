@@ -55,6 +55,7 @@ const HELD: WayBack = {
   margin: 1.25,
   text: 'held',
 };
+const TRIP = { code: 'spool-drive', text: 'The tail does not follow.', remedy: 'Look.' } as const;
 const wish = (kind: 'grow' | 'retract', over: Partial<Wish> = {}): Wish => ({
   ...STILL,
   motion: { kind },
@@ -71,17 +72,24 @@ const request = (over: Partial<DriveRequest> = {}): DriveRequest => ({
   limits: LIMITS,
   emergencyStopWired: true,
   described: new Set(Object.keys(READINGS)),
-  body: { length: 1, tailSlack: 0 },
+  body: { length: 1, tailSlack: 0, tipSpeed: 0 },
   estimateReasons: [],
+  shapeAt: NOW,
+  watch: { trip: null, foldSuspected: null },
   wayBack: CLEAR,
   judgedAt: NOW,
   remaining: 1,
   approachSpeed: 0.2,
   tipRetractorAttached: false,
+  tipRetractorState: 'absent',
   hasRetractorDrive: true,
   grip: null,
   musclePressures: null,
   bodyPressure: null,
+  bodyPressureBefore: 9000,
+  growthPressure: 1500,
+  hoopStrength: 8000,
+  bodyRadius: 0.08,
   ...over,
 });
 const speeds = (over: Partial<DriveRequest> = {}) => {
@@ -110,7 +118,10 @@ describe('the interlock permits', () => {
       readings: { ...READINGS, tail_tension: good(0.3) },
     };
     expect(speeds(over).retractorSpeed).toBe(0.1);
-    expect(speeds(over).spoolSpeed).toBeGreaterThan(-0.2);
+    const coming = { ...over, body: { length: 1, tailSlack: 0.05, tipSpeed: -0.1 } };
+    expect(speeds(coming).spoolSpeed).toBeCloseTo(-0.2, 12);
+    // The spool follows the tip that is measured, not the one that is wanted.
+    expect(speeds(over).spoolSpeed).toBeCloseTo(0, 12);
   });
   test('the slower of what is asked and what the distance to the target allows', () => {
     expect(speeds({ approachSpeed: 0.03 }).spoolSpeed).toBeCloseTo(-0.06, 12);
@@ -184,7 +195,7 @@ describe('the interlock refuses', () => {
     ],
     [
       'growth beyond the body’s length',
-      { wish: wish('grow'), body: { length: 40, tailSlack: 0 } },
+      { wish: wish('grow'), body: { length: 40, tailSlack: 0, tipSpeed: 0 } },
       'length-max',
     ],
     ['growth while the retractor grips', { wish: wish('grow'), tipRetractorAttached: true }, 'gripped'],
@@ -192,6 +203,35 @@ describe('the interlock refuses', () => {
       'growth above the pressure limit',
       { wish: wish('grow'), readings: { ...READINGS, body_pressure: good(15_500) } },
       'pressure-high',
+    ],
+    [
+      'to go on after a drive that did not follow',
+      { watch: { trip: TRIP, foldSuspected: null } },
+      'spool-drive',
+    ],
+    [
+      'a pull while a fold is suspected',
+      { watch: { trip: null, foldSuspected: { ...TRIP, code: 'suspected-fold' } } },
+      'suspected-fold',
+    ],
+    ['a shape estimated 400 ms ago', { shapeAt: NOW - 0.4 }, 'shape-old'],
+    ['a shape of the future', { shapeAt: NOW + 0.1 }, 'shape-old'],
+    ['a shape that was never estimated', { shapeAt: Number.NaN }, 'shape-old'],
+    [
+      'a pull by a retractor that lost its grip',
+      { wayBack: HELD, grip: true, tipRetractorState: 'engaging' },
+      'retractor-loose',
+    ],
+    [
+      'a pull by a retractor whose flag cannot be read, also where the base alone could pull',
+      { wayBack: CLEAR, grip: true, tipRetractorState: 'unknown' },
+      'retractor-unread',
+    ],
+    ['growth that the pressure cannot drive', { wish: wish('grow'), growthPressure: 9100 }, 'growth-stalls'],
+    [
+      'growth of which nobody knows what it takes',
+      { wish: wish('grow'), growthPressure: Number.NaN },
+      'growth',
     ],
   ])('%s', (_, over, code) => {
     if ('hasRetractorDrive' in over) {
@@ -240,7 +280,7 @@ describe('the interlock refuses', () => {
     for (const bad of [Number.NaN, Number.NEGATIVE_INFINITY]) {
       expect(refused({ approachSpeed: bad }).length).toBeGreaterThan(0);
       expect(refused({ wish: wish('retract', { tipSpeed: bad }) }).length).toBeGreaterThan(0);
-      expect(refused({ body: { length: bad, tailSlack: 0 } }).length).toBeGreaterThan(0);
+      expect(refused({ body: { length: bad, tailSlack: 0, tipSpeed: 0 } }).length).toBeGreaterThan(0);
       expect(refused({ judgedAt: bad }).length).toBeGreaterThan(0);
       expect(refused({ now: bad }).length).toBeGreaterThan(0);
     }
@@ -260,6 +300,43 @@ describe('the interlock refuses', () => {
       expect(judged.drive.setpoints.bodyPressure).toBeNull();
       expect(judged.refusal?.reasons[0]?.code).toBe('pressure-range');
     }
+  });
+
+  const pressureWish = (over: Partial<DriveRequest>) => {
+    const judged = PermittedDrive.judge(request({ wish: { ...STILL, pressure: 1 }, ...over }));
+    const codes = judged.refusal?.reasons.map((reason) => reason.code) ?? [];
+    expect(judged.drive.setpoints.bodyPressure === null).toBe(codes.length > 0);
+    return codes;
+  };
+  test('a body pressure that leaps instead of rising at the rate of the rig file', () => {
+    expect(pressureWish({ bodyPressure: 9100, bodyPressureBefore: 9000 })).toEqual([]);
+    expect(pressureWish({ bodyPressure: 9300, bodyPressureBefore: 9000 })).toEqual(['pressure-ramp']);
+    expect(pressureWish({ bodyPressure: 8700, bodyPressureBefore: 9000 })).toEqual(['pressure-ramp']);
+    expect(pressureWish({ bodyPressure: 9100, bodyPressureBefore: null })).toEqual(['pressure-ramp']);
+  });
+  // PR·4 ≤ strength: 9,000 Pa × 0.08 m × 4 = 2,880 N/m (thin shell; the factor is common practice).
+  test('a body pressure that loads wall or seam beyond a fourth of its strength', () => {
+    const over = { bodyPressure: 9000, bodyPressureBefore: 9000 };
+    expect(pressureWish({ ...over, hoopStrength: 2880 })).toEqual([]);
+    expect(pressureWish({ ...over, hoopStrength: 2879 })).toEqual(['hoop']);
+    expect(pressureWish({ ...over, hoopStrength: Number.NaN })).toEqual(['hoop']);
+    expect(pressureWish({ ...over, hoopStrength: null })).toEqual([]);
+  });
+  test('to ease a spool off that holds nothing, or that nobody sees grip', () => {
+    const heldHigh: WayBack = {
+      kind: 'cannot-judge',
+      reasons: [{ code: 'held-tension', text: 't', remedy: 'r' }],
+      text: '',
+    };
+    const over = { wish: wish('grow'), wayBack: heldHigh, tipRetractorAttached: true };
+    expect(speeds(over)).toEqual({ spoolSpeed: 0.05, retractorSpeed: 0 });
+    expect(speeds({ ...over, tipRetractorAttached: false, grip: true }).spoolSpeed).toBe(0);
+    expect(speeds({ ...over, body: { length: 1, tailSlack: 0.2, tipSpeed: 0 } }).spoolSpeed).toBe(0);
+    expect(speeds({ ...over, body: { length: 1, tailSlack: Number.NaN, tipSpeed: 0 } }).spoolSpeed).toBe(0);
+    expect(speeds({ ...over, readings: { ...READINGS, tail_tension: good(0) } }).spoolSpeed).toBe(0);
+    expect(speeds({ ...over, leaseAlive: false }).spoolSpeed).toBe(0);
+    const also = { ...heldHigh, reasons: [...heldHigh.reasons, { code: 'x', text: 't', remedy: 'r' }] };
+    expect(speeds({ ...over, wayBack: also }).spoolSpeed).toBe(0);
   });
 
   test('with all its reasons, not only the first', () => {

@@ -19,6 +19,7 @@ export const bodyB: BodyDescription = {
   guideSetback: 0,
   collapseFraction: 0.8,
   eccentricityFloor: 0.1,
+  hoopStrength: null,
   measured: ['E', 'G', 'inversionYield', 'friction'],
   freeEnd: Number.POSITIVE_INFINITY,
   onGround: true,
