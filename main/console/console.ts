@@ -4,6 +4,7 @@ import type {
   ConsoleMessage,
   LinkStatus,
   RigSummary,
+  TipRetractorStatus,
 } from '../../shared-model/contract/frame.ts';
 import { goodValue, type Readings } from '../../shared-model/contract/reading.ts';
 import {
@@ -42,14 +43,15 @@ import { createMissionNotes } from './mission-notes.ts';
 import { answerRequest, type RequestContext } from './requests.ts';
 import { sampleOf } from './sample.ts';
 import { NO_RAMPS, stepRamps } from './setpoint-ramps.ts';
-import { createTipRetractor, retractorStatus } from './tip-retractor.ts';
+import { createTipRetractor, retractorState, retractorStatus } from './tip-retractor.ts';
 import { watchedTick } from './watched-tick.ts';
 import {
   createWayBackJudge,
   followShape,
   growthPressureOf,
   judgeTo,
-  outlookLine,
+  presentLine,
+  remedyLine,
   type Surroundings,
   standingOf,
 } from './way-back.ts';
@@ -103,6 +105,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   /** What the rig has last confirmed. */
   let driven: PermittedDrive | null = null;
   let attachedBefore = false;
+  let around: Surroundings = { estimate, readings: {}, retractorAttached: false, now: Number.NaN };
   let board = EMPTY_BOARD;
   let readings: Readings = {};
   let confirmed = false;
@@ -147,14 +150,14 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     lastTickAt = now;
     noteLink(link.status());
     lease = expireLease(lease, now);
-    const status = retractorStatus(retractor, readings, now, rig.limits.readingAge);
-    const attached = status.state === 'attached';
-    notes.retractor(status);
+    const gripState = retractorState(retractor, readings, now, rig.limits.readingAge);
+    const attached = gripState === 'attached';
+    notes.retractor(gripState, retractor.source);
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
     bodyChanged ||= estimate.changedFrom < estimate.path.count;
     followShape(judge, estimate);
     noteTrips(attached, now);
-    const around = { estimate, readings, retractorAttached: attached, now };
+    around = { estimate, readings, retractorAttached: attached, now };
     const wayBack = judgeTo(judge, rig, around, 0);
     const stepped = stepBacktracking(
       backtracking,
@@ -166,7 +169,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     backtracking = stepped.backtracking;
     for (const event of stepped.events) void mission.append(event);
     const verdict = backtracking === null ? wayBack : judgeTo(judge, rig, around, backtracking.length);
-    const judged = decide(stepped.wish, verdict, around, dt);
+    const judged = decide(stepped.wish, verdict, gripState, dt);
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
     driven = confirmed ? judged.drive : null;
@@ -176,7 +179,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     recorder.sample(
       sampleOf({ readings, estimate: estimate.frame, wayBack, wish: wishOf(lease, now), judged, now }),
     );
-    publish(judged, wayBack, around);
+    publish(judged, wayBack, gripState);
   };
 
   const remainingTo = (length: number): number | null => {
@@ -198,7 +201,12 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     attachedBefore = attached;
   };
 
-  const decide = (wish: Wish, wayBack: WayBack, around: Surroundings, dt: number): Judgement => {
+  const decide = (
+    wish: Wish,
+    wayBack: WayBack,
+    gripState: TipRetractorStatus['state'],
+    dt: number,
+  ): Judgement => {
     const { now, retractorAttached } = around;
     const stepped = stepRamps(
       ramps,
@@ -230,7 +238,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       approachSpeed: remaining === null ? Number.NaN : approachSpeed(remaining),
       watch,
       tipRetractorAttached: retractorAttached,
-      tipRetractorState: retractorStatus(retractor, readings, now, rig.limits.readingAge).state,
+      tipRetractorState: gripState,
       hasRetractorDrive,
       grip: rig.writes.tip_retractor_grip === undefined ? null : retractor.commanded,
       musclePressures: stepped.musclePressures,
@@ -263,7 +271,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     notes.alarms(stepped.changes);
   };
 
-  const publish = (judged: Judgement, wayBack: WayBack, around: Surroundings): void => {
+  const publish = (judged: Judgement, wayBack: WayBack, gripState: TipRetractorStatus['state']): void => {
     const { now } = around;
     const withBody = sendAll || (bodyChanged && now - bodyAt >= BODY_EVERY);
     const withOutlook = sendAll || now - outlookAt >= OUTLOOK_EVERY;
@@ -287,7 +295,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
         musclePressureSetpoints: [],
       },
       refusal: judged.refusal,
-      tipRetractor: retractorStatus(retractor, readings, now, rig.limits.readingAge),
+      tipRetractor: retractorStatus(retractor, gripState, wayBack, now),
       backtrack:
         backtracking === null
           ? null
@@ -301,7 +309,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       recording: recorder.status(),
       ...(withBody ? { body: bodyLine(estimate.path) } : {}),
       ...(withOutlook
-        ? { outlook: outlookLine(judge, estimate, rig), standing: standingOf(judge, rig, around) }
+        ? { outlook: presentLine(judge, rig, around), standing: standingOf(judge, rig, around) }
         : {}),
     };
     broadcast(frame);
@@ -348,6 +356,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     setRetractor: (next) => {
       retractor = next;
     },
+    previewRemedy: (kind) => remedyLine(judge, rig, around, kind),
     clearFold: () => {
       const was = watch.foldSuspected !== null;
       watch = clearFold(watch);

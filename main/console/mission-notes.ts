@@ -12,7 +12,7 @@ export interface MissionNotes {
   /** Whether the link has changed its state. */
   link(status: LinkStatus): boolean;
   /** A state that cannot be read is no news. */
-  retractor(status: TipRetractorStatus): void;
+  retractor(state: TipRetractorStatus['state'], source: TipRetractorStatus['source']): void;
   motion(estimate: EstimateFrame | null, tipSpeed: number, now: number): void;
   tripped(trip: Trip, length: number | null): void;
   refusal(judged: Judgement, wayBack: WayBack, lease: Lease, length: number | null): void;
@@ -35,7 +35,7 @@ export const createMissionNotes = (append: (event: UnstampedEvent) => void): Mis
       append({ kind: 'link', state: status.state, text: linkText(status) });
       return true;
     },
-    retractor: ({ state, source }) => {
+    retractor: (state, source) => {
       const attached = state === 'attached' || state === 'releasing';
       if (state === 'unknown' || attached === attachedBefore) return;
       attachedBefore = attached;

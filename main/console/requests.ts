@@ -1,8 +1,9 @@
 import { randomUUID } from 'node:crypto';
-import type { EstimateFrame } from '../../shared-model/contract/frame.ts';
+import type { EstimateFrame, OutlookLine } from '../../shared-model/contract/frame.ts';
 import type { Readings } from '../../shared-model/contract/reading.ts';
 import type { Answer, ConsoleRequest } from '../../shared-model/contract/request.ts';
 import { branchPointHere, branchPointsOnBody } from '../../shared-model/mission/selectors.ts';
+import type { Remedy } from '../../shared-model/retraction/verdict.ts';
 import type { Pose } from '../../shared-model/shape/vector.ts';
 import { listMissions } from '../record/mission-folder.ts';
 import type { Recorder } from '../record/recorder.ts';
@@ -22,6 +23,7 @@ export interface RequestContext {
   isMoving(): boolean;
   retractor(): TipRetractor;
   setRetractor(next: TipRetractor): void;
+  previewRemedy(kind: Remedy['kind']): OutlookLine | null;
   /** Whether a fold was suspected. */
   clearFold(): boolean;
   acknowledge(alarm: string): boolean;
@@ -43,6 +45,10 @@ export const answerRequest = async (request: DeskRequest, context: RequestContex
       return logWaypoint(request, context);
     case 'set-tip-retractor':
       return setTipRetractor(request, context);
+    case 'preview-remedy': {
+      const line = context.previewRemedy(request.remedy);
+      return line === null ? no('no-preview', 'That is not on offer now.') : { ok: true, value: line };
+    }
     case 'clear-fold':
       return clearFold(request, context);
     case 'acknowledge-alarm':
@@ -149,8 +155,11 @@ const logWaypoint = async (request: Request<'log-waypoint'>, context: RequestCon
 const setTipRetractor = (request: Request<'set-tip-retractor'>, context: RequestContext): Answer => {
   if (context.isMoving()) return no('moving', 'Hold still before the tip retractor is engaged or released.');
   const retractor = context.retractor();
+  const asked = (): void =>
+    void context.mission.append({ kind: 'tip-retractor-asked', attached: request.attached });
   if (context.rig.writes.tip_retractor_grip !== undefined) {
-    context.setRetractor({ ...retractor, commanded: request.attached });
+    context.setRetractor({ ...retractor, commanded: request.attached, since: context.now() });
+    asked();
     return { ok: true };
   }
   if (retractor.source === 'sensed')
@@ -165,7 +174,8 @@ const setTipRetractor = (request: Request<'set-tip-retractor'>, context: Request
         ? 'Confirm that the tip retractor is fitted and grips the tail.'
         : 'Confirm that the tip retractor is released.',
     );
-  context.setRetractor({ ...retractor, declared: request.attached });
+  context.setRetractor({ ...retractor, declared: request.attached, since: context.now() });
+  asked();
   return { ok: true };
 };
 

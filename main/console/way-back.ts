@@ -8,7 +8,8 @@ import {
   type JudgeSpace,
   judgeWayBack,
 } from '../../shared-model/retraction/judge.ts';
-import { findRemedies } from '../../shared-model/retraction/remedies.ts';
+import { outlookLine } from '../../shared-model/retraction/outlook-line.ts';
+import { findRemedies, remedied } from '../../shared-model/retraction/remedies.ts';
 import { judgeStanding, type Standing } from '../../shared-model/retraction/standing.ts';
 import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
 import type { WayBackInput } from '../../shared-model/retraction/way-back-input.ts';
@@ -17,8 +18,6 @@ import type { RigDescription } from '../rig/signal.ts';
 
 /** Remedies take several judgements; twice a second is soon enough for a person [s]. */
 const REMEDIES_EVERY = 0.5;
-/** Points of the chart. */
-const CHART_POINTS = 160;
 
 /** The judge of one rig with what it keeps from tick to tick. */
 export interface WayBackJudge {
@@ -64,7 +63,10 @@ export const judgeTo = (
 ): WayBack => {
   const input = inputOf(judge, rig, around, target);
   const verdict = judgeWayBack(input, judge.space);
-  if (verdict.kind !== 'would-buckle') return verdict;
+  if (verdict.kind !== 'would-buckle') {
+    if (target === 0) judge.remedies = [];
+    return verdict;
+  }
   if (around.now - judge.remediesAt >= REMEDIES_EVERY) {
     judge.remedies = findRemedies(
       { ...input, target: 0 },
@@ -157,20 +159,22 @@ export const growthPressureOf = (estimate: Estimate, rig: RigDescription): numbe
         holdBack: 0,
       }).needed;
 
-/** The last judgement to the base as a chart, thinned. */
-export const outlookLine = (judge: WayBackJudge, estimate: Estimate, rig: RigDescription): OutlookLine => {
-  const { low, high } = judge.space;
-  const stride = Math.max(1, Math.ceil(low.count / CHART_POINTS));
-  const stations = Array.from({ length: low.count }, (_, i) => i).filter(
-    (i) => i > 0 && (i % stride === 0 || i === low.count - 1),
-  );
-  // At each length the end of the pressure band that the verdict rests on.
-  const pick = (part: 'baseTension' | 'capacity') =>
-    stations.map((i) => Number((low.ratio[i]! <= high.ratio[i]! ? low : high)[part][i]!.toPrecision(5)));
-  return {
-    length: stations.map((i) => Number(estimate.path.s[i]!.toPrecision(5))),
-    invert: pick('baseTension'),
-    buckle: pick('capacity'),
-    margin: defaultMargin(rig.body),
-  };
+/** What one of the remedies last offered would give, as a chart; null when it is offered no more. */
+export const remedyLine = (
+  judge: WayBackJudge,
+  rig: RigDescription,
+  around: Surroundings,
+  kind: Remedy['kind'],
+): OutlookLine | null => {
+  const remedy = judge.remedies.find((one) => one.kind === kind);
+  if (remedy === undefined) return null;
+  const found = remedied(inputOf(judge, rig, around, 0), remedy);
+  return found === null ? null : outlookLine(found.shape, found.space, defaultMargin(rig.body));
 };
+
+/** The last judgement to the base as a chart. */
+export const presentLine = (
+  judge: WayBackJudge,
+  rig: RigDescription,
+  { estimate }: Surroundings,
+): OutlookLine => outlookLine(estimate.path, judge.space, defaultMargin(rig.body));

@@ -1,12 +1,8 @@
-import { Switch } from 'radix-ui';
-import { useState } from 'react';
-import { consoleApi } from '../connection/console-api.ts';
 import { fixed } from '../parts/format.ts';
 import { HoldButton } from '../parts/hold-button.tsx';
-import { report } from '../parts/notice.ts';
 import { useConsole } from '../store/console-store.ts';
-import { ConfirmDialog } from './confirm-dialog.tsx';
 import { MarkControls } from './mark-controls.tsx';
+import { RetractorControl } from './retractor-control.tsx';
 import { chooseSpeed, SPEEDS, useSpeed } from './use-hand.ts';
 
 /** Glove-size controls; everything that moves is held. */
@@ -109,59 +105,3 @@ const PressureControls = () => (
     </div>
   </section>
 );
-
-const STATES = {
-  absent: 'not attached',
-  engaging: 'engaging…',
-  attached: 'grips the tail',
-  releasing: 'releasing…',
-  unknown: 'state unknown',
-} as const;
-
-const RetractorControl = () => {
-  const has = useConsole(({ rig }) => rig?.tipRetractor ?? 'none');
-  const state = useConsole(({ frame }) => frame?.tipRetractor.state ?? 'unknown');
-  const source = useConsole(({ frame }) => frame?.tipRetractor.source ?? 'sensed');
-  const [asking, setAsking] = useState<boolean | null>(null);
-  const checked = state === 'attached' || state === 'engaging';
-  const set = async (attached: boolean, confirmed: boolean): Promise<void> =>
-    report(
-      await consoleApi.request({ kind: 'set-tip-retractor', attached, confirmed }),
-      source === 'declared'
-        ? 'Declared, and recorded.'
-        : `Sent; ${attached ? 'it engages' : 'it releases'} when the rig says so.`,
-    );
-  const change = (attached: boolean): void =>
-    has === 'declared' ? setAsking(attached) : void set(attached, true);
-  return (
-    <section className="panel" aria-label="Tip retractor controls">
-      <Switch.Root
-        className="switch"
-        checked={checked}
-        onCheckedChange={change}
-        disabled={has === 'none'}
-        aria-label="Tip retractor"
-      >
-        <span className="knob" aria-hidden="true" />
-        Tip retractor
-      </Switch.Root>
-      <p className="trace">
-        {has === 'none'
-          ? 'This rig has none.'
-          : `${STATES[state]}, ${source === 'sensed' ? 'sensed by the rig' : 'on the word of the operator'}`}
-      </p>
-      <ConfirmDialog
-        open={asking !== null}
-        title={asking ? 'Tip retractor fitted?' : 'Tip retractor released?'}
-        text={
-          asking
-            ? 'This rig cannot sense it. Confirm only if you have seen it fitted and gripping the tail; pulling relies on your word, and it is recorded.'
-            : 'Confirm that it no longer grips the tail.'
-        }
-        confirm={asking ? 'It is fitted and grips' : 'It is released'}
-        onConfirm={() => void set(asking === true, true)}
-        onClose={() => setAsking(null)}
-      />
-    </section>
-  );
-};

@@ -1,9 +1,11 @@
 import { useEffect, useRef } from 'react';
 import UPlot from 'uplot';
 import 'uplot/dist/uPlot.min.css';
+import type { OutlookLine } from '../../shared-model/contract/frame.ts';
 import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
 import type { ConsoleState } from '../store/console-store.ts';
 import { consoleStore, useConsole } from '../store/console-store.ts';
+import { previewStore, usePreview } from './remedy-preview.ts';
 
 /** For every body length back to the base: the tension that inverts, with margin, and the tension that buckles. */
 export const OutlookChart = () => {
@@ -13,11 +15,13 @@ export const OutlookChart = () => {
     return element === null ? undefined : mountChart(element);
   }, []);
   const summary = useConsole(summaryOf);
+  const previewing = usePreview().line !== null;
   return (
     <figure className="outlook" aria-label="Outlook for the way back">
       <p className="outlook-key" aria-hidden="true">
         <span className="key-line" /> needed, with margin <span className="key-line key-dashed" /> buckles at{' '}
         <span className="key-refused" /> refused ● measured
+        {previewing ? <span className="key-preview"> ▬ with the remedy</span> : null}
       </p>
       <div ref={host} className="outlook-plot" />
       <figcaption className="visually-hidden">{summary}</figcaption>
@@ -49,8 +53,10 @@ const mountChart = (element: HTMLElement): (() => void) => {
     drawn = state.outlook;
     chart?.setData(dataOf(state));
   });
+  const unsubscribePreview = previewStore.subscribe(() => chart?.setData(dataOf(consoleStore.getState())));
   return () => {
     unsubscribe();
+    unsubscribePreview();
     resize.disconnect();
     themes.disconnect();
     chart?.destroy();
@@ -62,21 +68,35 @@ const FLOOR = 0.1;
 
 const dataOf = ({ outlook }: ConsoleState): UPlot.AlignedData => {
   if (outlook === null || outlook.length.length === 0)
-    return [
-      [0, 1],
-      [null, null],
-      [null, null],
-    ];
-  return [
-    [...outlook.length],
-    outlook.invert.map((force) => Math.max(FLOOR, force * outlook.margin)),
-    outlook.buckle.map((force) => Math.max(FLOOR, force)),
-  ];
+    return [[0, 1], ...Array.from({ length: 4 }, () => [null, null])] as UPlot.AlignedData;
+  return [[...outlook.length], ...linesOf(outlook), ...previewLines(outlook)];
+};
+
+const linesOf = (outlook: OutlookLine): number[][] => [
+  outlook.invert.map((force) => Math.max(FLOOR, force * outlook.margin)),
+  outlook.buckle.map((force) => Math.max(FLOOR, force)),
+];
+
+/** The chosen remedy's lines at the lengths of the present ones; empty without one. */
+const previewLines = (outlook: OutlookLine): (number | null)[][] => {
+  const { line } = previewStore.getState();
+  if (line === null) return [outlook.length.map(() => null), outlook.length.map(() => null)];
+  return linesOf(line).map((forces) => outlook.length.map((length) => valueAt(line.length, forces, length)));
+};
+
+/** Linear between the points of a line; null beyond them. */
+const valueAt = (lengths: readonly number[], forces: readonly number[], at: number): number | null => {
+  const next = lengths.findIndex((length) => length >= at);
+  if (next < 0) return null;
+  if (next === 0) return forces[0] ?? null;
+  const [a, b] = [lengths[next - 1]!, lengths[next]!];
+  const share = b > a ? (at - a) / (b - a) : 0;
+  return forces[next - 1]! + share * (forces[next]! - forces[next - 1]!);
 };
 
 const sizeOf = (element: HTMLElement) => ({
   width: Math.max(160, element.clientWidth),
-  height: Math.max(90, element.clientHeight),
+  height: Math.max(60, element.clientHeight),
 });
 
 const optionsFor = (element: HTMLElement): UPlot.Options => {
@@ -112,6 +132,8 @@ const optionsFor = (element: HTMLElement): UPlot.Options => {
       {},
       { stroke: colour('--ink'), width: 2, points: { show: false } },
       { stroke: colour('--ink'), width: 2, dash: [7, 4], points: { show: false } },
+      { stroke: colour('--held'), width: 2, points: { show: false } },
+      { stroke: colour('--held'), width: 2, dash: [7, 4], points: { show: false } },
     ],
     hooks: { drawAxes: [shadeRefused], draw: [drawMarks, drawTension] },
   };
@@ -123,9 +145,14 @@ const stepAbove = (force: number): number =>
   decadeOf(force) * STEPS.find((step) => step * decadeOf(force) > force)!;
 const stepBelow = (force: number): number =>
   decadeOf(force) * STEPS.findLast((step) => step * decadeOf(force) < force * (1 - 1e-9))!;
-/** Ticks at 1, 2 and 5 of every decade. */
-const keepSteps: UPlot.Axis.Filter = (_, ticks) =>
-  ticks.map((tick) => (STEPS.includes(Number((tick / decadeOf(tick)).toFixed(6))) ? tick : null));
+/** Ticks at 1, 2 and 5 of every decade, or at whole decades where more than one and a half are shown. */
+const keepSteps: UPlot.Axis.Filter = (_, ticks) => {
+  const wide = ticks.at(-1)! / ticks[0]! > 30;
+  return ticks.map((tick) => {
+    const step = Number((tick / decadeOf(tick)).toFixed(6));
+    return step === 1 || (!wide && STEPS.includes(step)) ? tick : null;
+  });
+};
 
 /** Hatches the lengths at which a pull is refused, before anyone tries. */
 const shadeRefused = (chart: UPlot): void => {

@@ -14,6 +14,7 @@ import {
   type MissionState,
   reduceMission,
 } from '../../shared-model/mission/mission.ts';
+import type { Standing } from '../../shared-model/retraction/standing.ts';
 
 /** Everything the screen knows, all of it told by the console. */
 export interface ConsoleState {
@@ -25,6 +26,7 @@ export interface ConsoleState {
   /** Kept from the last frame that carried them. */
   readonly body: BodyLine | null;
   readonly outlook: OutlookLine | null;
+  readonly standing: Standing | null;
   /** This page's clock at the last frame [s]; with `frame.at` it gives ages. */
   readonly framedAt: number;
 }
@@ -37,6 +39,7 @@ export const initialState: ConsoleState = {
   frame: null,
   body: null,
   outlook: null,
+  standing: null,
   framedAt: 0,
 };
 
@@ -50,6 +53,7 @@ export const receive = (state: ConsoleState, message: ConsoleMessage, pageTime: 
     frame: message,
     body: message.body ?? state.body,
     outlook: message.outlook ?? state.outlook,
+    standing: message.standing === undefined ? state.standing : message.standing,
     framedAt: pageTime,
   };
 };

@@ -95,6 +95,16 @@ export interface TipRetractorStatus {
   /** How the console knows: the rig senses it, or a person declared it. */
   readonly source: 'sensed' | 'declared';
   readonly state: 'absent' | 'engaging' | 'attached' | 'releasing' | 'unknown';
+  /** When it was last asked for or declared, monotonic [s]; null: never. */
+  readonly since: number | null;
+  /** What of attaching or releasing is done, and what comes next; empty while it is neither attached nor asked for. */
+  readonly steps: readonly ProcedureStep[];
+}
+
+/** One step of a procedure that a person follows. */
+export interface ProcedureStep {
+  readonly text: string;
+  readonly state: 'done' | 'now' | 'open' | 'failed';
 }
 
 /** All that changes, published once a tick. Parts that are large are sent only when they changed. */

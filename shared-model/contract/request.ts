@@ -58,6 +58,11 @@ export const requestSchema = z.discriminatedUnion('kind', [
   }),
   /** Engage or release the tip retractor where the rig can, otherwise declare it; `confirmed` is the second step. */
   z.strictObject({ kind: z.literal('set-tip-retractor'), attached: z.boolean(), confirmed: z.boolean() }),
+  /** What one of the remedies on offer would make of the outlook; answers with an `OutlookLine`. */
+  z.strictObject({
+    kind: z.literal('preview-remedy'),
+    remedy: z.enum(['tip-retractor', 'body-pressure', 'straighten', 'shorter']),
+  }),
   /** After a suspected fold: a person looked and says that the body lies as before; `confirmed` is the second step. */
   z.strictObject({ kind: z.literal('clear-fold'), confirmed: z.boolean() }),
   z.strictObject({ kind: z.literal('acknowledge-alarm'), alarm: id }),
@@ -87,7 +92,12 @@ export type ConsoleRequest = z.infer<typeof requestSchema>;
 export type RequestKind = ConsoleRequest['kind'];
 
 /** Kinds that any client may send; all others need the driver. */
-export const WATCHER_REQUESTS: readonly RequestKind[] = ['stop', 'take-over', 'list-missions'];
+export const WATCHER_REQUESTS: readonly RequestKind[] = [
+  'stop',
+  'take-over',
+  'list-missions',
+  'preview-remedy',
+];
 
 /** The answer to one request. `text` speaks to a person. */
 export type Answer =

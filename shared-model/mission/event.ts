@@ -72,6 +72,8 @@ export const missionEventSchema = z.discriminatedUnion('kind', [
     state: z.enum(['attached', 'absent']),
     source: z.enum(['sensed', 'declared']),
   }),
+  /** A person asked for it to be engaged or released, or declared that it is. */
+  z.strictObject({ ...stamp, kind: z.literal('tip-retractor-asked'), attached: z.boolean() }),
   /** Something went wrong under way: a fold of the body is suspected, or a drive does not follow. */
   z.strictObject({
     ...stamp,

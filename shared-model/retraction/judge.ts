@@ -9,6 +9,7 @@ import {
   type Outlook,
   worstStation,
 } from './outlook.ts';
+import { carefulMargin, shortestColumn, validityNote } from './validity.ts';
 import type { ForcesAt, Reason, WayBack } from './verdict.ts';
 import { inputReasons, type WayBackInput } from './way-back-input.ts';
 
@@ -36,11 +37,13 @@ const loosePart = (excess: number): number => (excess < 5e-4 ? 0 : Math.ceil(100
  */
 export const judgeWayBack = (input: WayBackInput, space: JudgeSpace = createJudgeSpace()): WayBack => {
   const reasons = inputReasons(input);
-  const { shape, pressure, payout, margin } = input;
+  const { shape, pressure, payout } = input;
   if (reasons.length > 0 || shape === null || pressure === null || payout === null)
     return cannotJudge(reasons);
   const excess = loosePart(payout / 2 - shape.s[shape.count - 1]!);
-  const pull = { body: input.body, tipSpeed: input.tipSpeed, excess };
+  const { body } = input;
+  const margin = carefulMargin(body, input.margin);
+  const pull = { body, tipSpeed: input.tipSpeed, excess, shortest: shortestColumn(body) };
   const outlookAt = (P: number, out: Outlook) =>
     computeOutlook(shape, input.arms, { ...pull, pressure: P }, out);
   const outlooks = [
@@ -59,9 +62,12 @@ export const judgeWayBack = (input: WayBackInput, space: JudgeSpace = createJudg
         remedy: 'Check the body values in the rig file.',
       },
     ]);
-  if (input.retractor !== null) return judgeRetractor(input, shape, outlooks, here, pressure);
-  if (worst.ratio >= margin) return { kind: 'clear', here, worst, margin, text: clearText(worst, margin) };
-  return { kind: 'would-buckle', here, worst, margin, text: buckleText(worst, here, margin), remedies: [] };
+  if (input.retractor !== null) return judgeRetractor({ ...input, margin }, shape, outlooks, here, pressure);
+  const note = validityNote(body, here.length);
+  if (worst.ratio >= margin)
+    return { kind: 'clear', here, worst, margin, text: `${clearText(worst, margin)}${note}` };
+  const text = `${buckleText(worst, here, margin)}${note}`;
+  return { kind: 'would-buckle', here, worst, margin, text, remedies: [] };
 };
 
 /** The one with the smaller ratio; one that is not a number is worse than any. */

@@ -21,6 +21,8 @@ export interface PullConditions {
   readonly tipSpeed: number;
   /** λ/2 − shape length, ≥ 0: counts as straight tail at the base and as column length [m]. */
   readonly excess: number;
+  /** A shorter body is taken to be so long where it could buckle as a column [m]; 0 for the bare formula. */
+  readonly shortest: number;
 }
 
 /** Forces at every body length, structure of arrays over the stations of the shape; forces in N, arms in m. */
@@ -85,7 +87,8 @@ const samePull = (a: PullConditions | undefined, b: PullConditions): boolean =>
   a.body === b.body &&
   a.pressure === b.pressure &&
   a.tipSpeed === b.tipSpeed &&
-  a.excess === b.excess;
+  a.excess === b.excess &&
+  a.shortest === b.shortest;
 
 const fillLie = (out: Outlook, shape: SampledShape, friction: number, from: number): void => {
   const { s, bend, count } = shape;
@@ -120,8 +123,9 @@ const fillForces = (
     const lifted = body.tailWeight * depthBelowBase(shape, j, gravity.direction);
     const tension = tipTension * out.amplification[j]! + drag * (pull.excess + out.dragged[j]!) + lifted;
     const L = shape.s[j]! + pull.excess;
-    u = setbackRoot(EI, S, L, setback, u);
-    const F_c = columnLoadOf(u, EI, S, L);
+    const column = Math.max(L, pull.shortest);
+    u = setbackRoot(EI, S, column, setback, u);
+    const F_c = columnLoadOf(u, EI, S, column);
     const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, floor);
     out.baseTension[j] = tension;
     out.columnLoad[j] = F_c;
@@ -134,11 +138,16 @@ const fillForces = (
 
 /** Load that folds the body cut at station j [N], for one pressure: what `computeOutlook` fills in there. */
 export const capacityAt = (shape: SampledShape, arms: Arms, pull: PullConditions, j: number): number => {
-  const { body, pressure, excess } = pull;
+  const { body, pressure, excess, shortest } = pull;
   const PA = pressure * area(body);
   const L = shape.s[j]! + excess;
   if (L === 0) return PA;
-  const F_c = columnLoad(bendingStiffness(body), shearStiffness(body, pressure), L, arms.holding.setback);
+  const F_c = columnLoad(
+    bendingStiffness(body),
+    shearStiffness(body, pressure),
+    Math.max(L, shortest),
+    arms.holding.setback,
+  );
   const arm = Math.max(arms.tangent[j]!, arms.chord[j]!, body.eccentricityFloor * body.radius);
   return capacity(F_c, PA, body.radius, arm, arms.moment[j]!, body.collapseFraction);
 };

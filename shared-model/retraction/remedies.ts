@@ -42,6 +42,8 @@ const SEARCHED = 150;
 const TIP_RETRACTOR: Remedy = {
   kind: 'tip-retractor',
   text: 'Engage the tip retractor: it takes the pull at the tip, so nothing of it can fold the body.',
+  label: 'Tip retractor',
+  effect: 'no pull on the body',
   ratio: null,
   value: null,
 };
@@ -72,7 +74,14 @@ const pressureRemedy = (
   const way = value < (input.pressure ?? 0) ? 'Lower' : 'Raise';
   const still = clears ? '' : `, nearer to ${input.margin} but not enough by itself`;
   const text = `${way} body pressure to ${(value / 1000).toFixed(2)} kPa: ratio ${ratio.toFixed(2)}${still}.`;
-  return { kind: 'body-pressure', text, ratio, value };
+  return {
+    kind: 'body-pressure',
+    text,
+    label: `${way} to ${(value / 1000).toFixed(2)} kPa`,
+    effect: effectOf(ratio, input.margin),
+    ratio,
+    value,
+  };
 };
 
 /** Pressures that a person sets in [Pa]. */
@@ -123,7 +132,39 @@ const straightenRemedy = (input: WayBackInput, body: OtherBody): Remedy | null =
   if (!(ratio >= input.margin)) return null;
   const value = tipLength(body.shape) - body.shape.s[station]!;
   const what = station === 0 ? `all ${value.toFixed(2)} m` : `the last ${value.toFixed(2)} m to the tip`;
-  return { kind: 'straighten', text: `Straighten ${what}: ratio ${ratio.toFixed(2)}.`, ratio, value };
+  return {
+    kind: 'straighten',
+    text: `Straighten ${what}: ratio ${ratio.toFixed(2)}.`,
+    label: `Straighten ${value.toFixed(1)} m`,
+    effect: effectOf(ratio, input.margin),
+    ratio,
+    value,
+  };
+};
+
+const effectOf = (ratio: number, margin: number): string =>
+  ratio >= margin ? `ratio ${ratio.toFixed(2)}` : `ratio ${ratio.toFixed(2)}, not enough`;
+
+/**
+ * The body and the outlooks that a remedy would give, for showing them beside the present ones. Null where the remedy
+ * cannot be worked out for this input any more.
+ */
+export const remedied = (
+  input: WayBackInput,
+  remedy: Remedy,
+): { readonly shape: SampledShape; readonly space: JudgeSpace } | null => {
+  if (input.shape === null || remedy.value === null) return null;
+  const space = createJudgeSpace(input.shape.count);
+  const judged = (changes: Partial<WayBackInput>) => {
+    const verdict = judgeWayBack({ ...input, ...changes }, space);
+    const shape = changes.shape ?? input.shape;
+    return verdict.kind === 'cannot-judge' || shape === null ? null : { shape, space };
+  };
+  if (remedy.kind === 'body-pressure') return judged({ pressure: remedy.value });
+  if (remedy.kind !== 'straighten') return null;
+  const body = { shape: input.shape, arms: input.arms };
+  const from = firstStationFrom(input.shape, tipLength(input.shape) - remedy.value - 1e-9);
+  return judged(straightenedTip(body, from));
 };
 
 const tipLength = (shape: SampledShape): number => shape.s[shape.count - 1]!;
@@ -142,5 +183,12 @@ const shorterRemedy = (shape: SampledShape, margin: number, space: JudgeSpace): 
     value = shape.s[j]!;
   if (!(value > 0)) return null;
   const text = `The longest this shape can be pulled from the base is ${value.toFixed(2)} m.`;
-  return { kind: 'shorter', text, ratio: margin, value };
+  return {
+    kind: 'shorter',
+    text,
+    label: `At most ${value.toFixed(2)} m`,
+    effect: 'of this shape',
+    ratio: margin,
+    value,
+  };
 };

@@ -6,6 +6,7 @@ import type { Pose } from '../shape/vector.ts';
 import { createArms, type Holding, updateArms, updateStation } from './arms.ts';
 import { type Case, parseCase } from './case.ts';
 import { computeOutlook, createOutlook, forcesAt, type PullConditions } from './outlook.ts';
+import { leavesTheory } from './validity.ts';
 import type { ForcesAt } from './verdict.ts';
 
 /** Result of one planning case, SI. A ratio of null is infinite: nothing pulls, or there is no body that could fold. */
@@ -71,8 +72,8 @@ interface Way {
 /** Stations at most this share of the length apart, and no arc further from its chord than this share of the radius. */
 const SPACING = 1 / 400;
 const SAGITTA = 1e-3;
-/** The work grows with the square of the stations; a body coiled up more than they can follow is sampled coarser. */
-const STATIONS_MAX = 3000;
+/** A body coiled up more than so many stations can follow is sampled coarser. */
+const STATIONS_MAX = 20_000;
 
 const wayOf = (planned: Case, length: number): Way => {
   const holding = holdingOf(planned);
@@ -100,6 +101,7 @@ const pullOf = (planned: Case, length: number): PullConditions => {
     pressure: planned.pressure,
     tipSpeed: planned.tipSpeed,
     excess: Math.max(0, (planned.payout ?? 0) / 2 - length),
+    shortest: 0,
   };
 };
 
@@ -185,7 +187,16 @@ const ratioReason = (worst: ForcesAt, planned: Case): string => {
   if (worst.ratio === Number.POSITIVE_INFINITY) return 'nothing pulls on a body that could fold';
   if (worst.capacity === 0) return `gravity alone folds the body ${where}`;
   const compare = worst.ratio >= planned.margin ? 'reaches' : 'is below';
-  return `smallest ratio ${worst.ratio.toPrecision(4)} ${where} ${compare} the margin ${planned.margin}`;
+  return `smallest ratio ${worst.ratio.toPrecision(4)} ${where} ${compare} the margin ${planned.margin}${beyond(planned)}`;
+};
+
+/** What a person should know who relies on the bare formula. */
+const beyond = ({ body, segments }: Case): string => {
+  const left = leavesTheory(
+    body,
+    segments.reduce((sum, one) => sum + one.length, 0),
+  );
+  return left.length === 0 ? '' : `; beyond the theory (${left.join(', ')})`;
 };
 
 const crushReason = (crush: number, tipTension: number, margin: number): string =>

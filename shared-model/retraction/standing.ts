@@ -6,6 +6,7 @@ import { area } from '../mechanics/section.ts';
 import type { SampledShape } from '../shape/sampled-shape.ts';
 import type { Arms } from './arms.ts';
 import { capacityAt } from './outlook.ts';
+import { shortestColumn } from './validity.ts';
 
 /** How a body that is held still or grown is loaded. SI. */
 export interface Standing {
@@ -81,7 +82,12 @@ const holdLoad = (input: StandingInput): HoldLoad => {
 const EASE_STEP = 100;
 
 const bears = ({ shape, arms, body, tipSpeed }: StandingInput, pressure: number): number =>
-  capacityAt(shape, arms, { body, pressure, tipSpeed, excess: 0 }, shape.count - 1);
+  capacityAt(
+    shape,
+    arms,
+    { body, pressure, tipSpeed, excess: 0, shortest: shortestColumn(body) },
+    shape.count - 1,
+  );
 
 const heldBack = ({ body, pressureBand }: StandingInput, pressure: number): number =>
   Math.max(0, (area(body) / 2) * (pressure + pressureBand - tipLoss(body.growth, 0)));

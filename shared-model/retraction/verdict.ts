@@ -31,8 +31,10 @@ export interface ForcesAt {
 /** Something that would make the way back safe, worked out. */
 export interface Remedy {
   readonly kind: 'tip-retractor' | 'body-pressure' | 'straighten' | 'shorter';
-  /** A sentence with numbers. */
+  /** A sentence with numbers, and the same in two or three words: what to do, and what it gives. */
   readonly text: string;
+  readonly label: string;
+  readonly effect: string;
   /** The ratio it would give, or null where none applies. */
   readonly ratio: number | null;
   /** Body pressure [Pa], length to straighten [m], or longest length [m]. */

@@ -21,7 +21,7 @@ const HOLDING: Holding = {
   setback: rig.body.guideSetback,
   gravity: { weight: 0, payload: 0, direction: [0, 1, 0], supported: Number.POSITIVE_INFINITY },
 };
-const PULL = { body: rig.body, pressure: 9000, tipSpeed: 0.25, excess: 0 };
+const PULL = { body: rig.body, pressure: 9000, tipSpeed: 0.25, excess: 0, shortest: 0 };
 /** One tick at 20 Hz [ms]. */
 const TICK = 50;
 

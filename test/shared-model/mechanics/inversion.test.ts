@@ -5,7 +5,7 @@ import { bodyB, wayBackInput } from '../retraction/way-back-input.ts';
 const baseTension = (segments: Parameters<typeof wayBackInput>[0], holding = {}, excess = 0): number => {
   const { shape, arms } = wayBackInput(segments, {}, holding);
   if (shape === null) throw new Error('no shape');
-  const pull = { body: bodyB, pressure: 10e3, tipSpeed: 0, excess };
+  const pull = { body: bodyB, pressure: 10e3, tipSpeed: 0, excess, shortest: 0 };
   return computeOutlook(shape, arms, pull, createOutlook(shape.count)).baseTension[shape.count - 1] as number;
 };
 const tipTension = 28.9027;

@@ -40,6 +40,7 @@ describe('the outlook', () => {
       pressure: fc.constantFrom(8000, 9000),
       excess: fc.constantFrom(0, 0.01),
       tipSpeed: fc.constantFrom(0, 0.1),
+      shortest: fc.constantFrom(0, 0.2),
       friction: fc.constantFrom(0.2, 0.4),
       // A tick whose verdict nobody asked for leaves the outlook a revision behind.
       asked: fc.boolean(),
@@ -87,7 +88,7 @@ describe('the outlook', () => {
             computeOutlook(
               shape,
               arms,
-              { body, pressure, tipSpeed: 0, excess: 0 },
+              { body, pressure, tipSpeed: 0, excess: 0, shortest: 0 },
               createOutlook(shape.count),
             ).ratio[shape.count - 1]!;
           const between = ratioAt(low + share * width);
