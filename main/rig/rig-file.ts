@@ -265,6 +265,7 @@ const bodyOf = (body: RigEntry['body']): BodyDescription => ({
   collapseFraction: body.collapse_fraction,
   eccentricityFloor: body.eccentricity_floor,
   hoopStrength: body.hoop_strength_kN_per_m === undefined ? null : body.hoop_strength_kN_per_m * 1000,
+  justifiedMargin: null,
   measured: body.measured,
   freeEnd: body.free_end_m ?? Number.POSITIVE_INFINITY,
   onGround: body.on_ground,

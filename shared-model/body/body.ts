@@ -43,6 +43,8 @@ export interface BodyDescription extends Body {
   readonly eccentricityFloor: number;
   /** Strength of wall or seam as hoop force [N/m]; null where it is not known. */
   readonly hoopStrength: number | null;
+  /** Margin that the scatter of transition trials justifies; null before any. */
+  readonly justifiedMargin: number | null;
   /** Which of the values that decide a verdict were measured on this machine; the others are catalogue values. */
   readonly measured: readonly MeasuredValue[];
   /** Length of the free end that bends with the present muscles [m]; Infinity: the whole body does. */

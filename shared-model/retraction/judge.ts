@@ -23,9 +23,12 @@ export const createJudgeSpace = (room = 256): JudgeSpace => ({
   high: createOutlook(room),
 });
 
-/** 1.25, or 1.5 while a value that decides the verdict is a catalogue value. */
+/** 1.25, or 1.5 while a value that decides the verdict is a catalogue value; more where trials scattered more. */
 export const defaultMargin = (body: BodyDescription): number =>
-  MEASURED_VALUES.every((value) => body.measured.includes(value)) ? 1.25 : 1.5;
+  Math.max(
+    MEASURED_VALUES.every((value) => body.measured.includes(value)) ? 1.25 : 1.5,
+    body.justifiedMargin ?? 1,
+  );
 
 /** Below an encoder's count nothing is loose, and above it whole millimetres are, rounded up: noise is no new outlook. */
 const loosePart = (excess: number): number => (excess < 5e-4 ? 0 : Math.ceil(1000 * (excess - 1e-9)) / 1000);

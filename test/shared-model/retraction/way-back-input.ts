@@ -20,6 +20,7 @@ export const bodyB: BodyDescription = {
   collapseFraction: 0.8,
   eccentricityFloor: 0.1,
   hoopStrength: null,
+  justifiedMargin: null,
   measured: ['E', 'G', 'inversionYield', 'friction'],
   freeEnd: Number.POSITIVE_INFINITY,
   onGround: true,
