@@ -19,15 +19,16 @@ import { type Judgement, PermittedDrive } from '../../shared-model/retraction/in
 import { clearFold, rearmWatch, stepWatch, WATCHING } from '../../shared-model/retraction/pull-watch.ts';
 import type { WayBack } from '../../shared-model/retraction/verdict.ts';
 import { bodyLine } from '../../shared-model/shape/body-line.ts';
-import { createEstimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
+import { createEstimate, type Estimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
 import type { Clock } from '../clock.ts';
 import type { Recorder } from '../record/recorder.ts';
 import type { RigLink } from '../rig/rig-link.ts';
-import type { RigDescription } from '../rig/signal.ts';
+import type { TriedRig } from '../rig/trials.ts';
 import { alarmConditions } from './alarm-conditions.ts';
 import { acknowledgeAlarm, EMPTY_BOARD, listAlarms, stepAlarms } from './alarms.ts';
 import { approachSpeed } from './approach.ts';
 import { type Backtracking, stepBacktracking } from './backtracking.ts';
+import { createBench } from './bench.ts';
 import { askedSpeed, holdStatus } from './hold-status.ts';
 import {
   expireLease,
@@ -58,7 +59,7 @@ import {
 
 /** What the console is made of; everything that touches the world comes in here. */
 export interface ConsoleParts {
-  readonly rig: RigDescription;
+  readonly tried: TriedRig;
   readonly summary: RigSummary;
   readonly link: RigLink;
   readonly recorder: Recorder;
@@ -88,7 +89,9 @@ const BODY_EVERY = 0.1;
 const OUTLOOK_EVERY = 0.5;
 
 export const createConsole = (parts: ConsoleParts): RunningConsole => {
-  const { rig, link, recorder, clock } = parts;
+  const { link, recorder, clock } = parts;
+  const { rig } = parts.tried;
+  const bench = createBench(parts.tried);
   const mission = createMissionLog(clock, recorder, (event) => broadcast({ kind: 'event', event }));
   const notes = createMissionNotes((event) => void mission.append(event));
   const clients = new Set<string>();
@@ -173,6 +176,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
     driven = confirmed ? judged.drive : null;
+    bench.note(readings, estimate.frame, turnOf(estimate), judged.tipSpeed, now);
     notes.motion(estimate.frame, judged.tipSpeed, now);
     notes.refusal(judged, verdict, lease, estimate.frame?.length ?? null);
     noteAlarms(now);
@@ -348,6 +352,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     recorder,
     mission,
     missionsDir: parts.missionsDir,
+    bench,
     simulateFault: parts.simulateFault,
     estimate: () => estimate.frame,
     readings: () => readings,
@@ -376,6 +381,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       link.reconnect();
     },
     now: () => clock.now(),
+    wall: () => clock.wall(),
   };
 
   const drive = (client: string, request: Extract<ConsoleRequest, { kind: 'hold' | 'release' }>): Answer => {
@@ -465,3 +471,6 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     },
   };
 };
+
+/** Total bend of the body as estimated [rad]. */
+const turnOf = ({ path }: Estimate): number => path.bend[path.count - 1] ?? 0;

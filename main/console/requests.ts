@@ -8,6 +8,7 @@ import type { Pose } from '../../shared-model/shape/vector.ts';
 import { listMissions } from '../record/mission-folder.ts';
 import type { Recorder } from '../record/recorder.ts';
 import type { RigDescription } from '../rig/signal.ts';
+import type { Bench } from './bench.ts';
 import type { MissionLog } from './mission-log.ts';
 import type { TipRetractor } from './tip-retractor.ts';
 
@@ -17,6 +18,7 @@ export interface RequestContext {
   readonly recorder: Recorder;
   readonly mission: MissionLog;
   readonly missionsDir: string;
+  readonly bench: Bench;
   readonly simulateFault: ((name: string) => void) | null;
   estimate(): EstimateFrame | null;
   readings(): Readings;
@@ -29,6 +31,7 @@ export interface RequestContext {
   acknowledge(alarm: string): boolean;
   reconnect(): void;
   now(): number;
+  wall(): Date;
 }
 
 type Request<Kind extends ConsoleRequest['kind']> = Extract<ConsoleRequest, { kind: Kind }>;
@@ -63,6 +66,14 @@ export const answerRequest = async (request: DeskRequest, context: RequestContex
         return no('not-simulated', 'Only the built-in rig in this process can simulate faults.');
       context.simulateFault(request.fault);
       return { ok: true };
+    case 'bench-take':
+      return context.isMoving()
+        ? no('moving', 'Let go first; then take the reading.')
+        : context.bench.take(request.trial, context.now());
+    case 'bench-save':
+      return saveTrial(request, context);
+    case 'bench-list':
+      return context.bench.list();
     case 'list-missions':
       return listed(context.missionsDir);
   }
@@ -177,6 +188,19 @@ const setTipRetractor = (request: Request<'set-tip-retractor'>, context: Request
   context.setRetractor({ ...retractor, declared: request.attached, since: context.now() });
   asked();
   return { ok: true };
+};
+
+const saveTrial = async (request: Request<'bench-save'>, context: RequestContext): Promise<Answer> => {
+  const { trial, initials, expires } = request;
+  const { answer, record } = await context.bench.save(trial, initials, expires, context.wall());
+  if (record !== null)
+    void context.mission.append({
+      kind: 'trial-saved',
+      trial: record.trial.kind,
+      initials,
+      values: record.values,
+    });
+  return answer;
 };
 
 const clearFold = async (request: Request<'clear-fold'>, context: RequestContext): Promise<Answer> => {

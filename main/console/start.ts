@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import { MEASURED_VALUES } from '../../shared-model/body/body.ts';
+import { type BodyDescription, MEASURED_VALUES, type TipLoss } from '../../shared-model/body/body.ts';
 import type { CameraSource, ConsoleMessage, RigSummary } from '../../shared-model/contract/frame.ts';
 import { defaultMargin } from '../../shared-model/retraction/judge.ts';
 import { type Clock, systemClock } from '../clock.ts';
@@ -9,6 +9,7 @@ import { BUILT_IN_RIG_FILE, loadRigFile } from '../rig/rig-file.ts';
 import type { OpenLine } from '../rig/serial-line.ts';
 import { serialPortOpener } from '../rig/serial-port-line.ts';
 import type { RigDescription } from '../rig/signal.ts';
+import { type TriedRig, withTrials } from '../rig/trials.ts';
 import { createBuiltInRig, type Fault } from '../simulator/built-in-rig.ts';
 import { leatPassages } from '../simulator/leat.ts';
 import { SOFTWARE } from '../software.ts';
@@ -35,8 +36,13 @@ export const startConsole = async (
 ): Promise<RunningConsole> => {
   const loaded = loadRigFile(options.rigFile ?? BUILT_IN_RIG_FILE);
   if (!loaded.ok) throw new StartError(loaded.errors.join('\n'));
-  const rig = withPath(loaded.rig, options.serialPath);
-  const { openLine, simulateFault } = lineFor(rig, options.seed, clock);
+  const file = withPath(loaded.rig, options.serialPath);
+  // A package may not be written into, so the built-in rig's companion lies with the missions.
+  const folder = options.rigFile === null ? options.missionsDir : null;
+  const tried = withTrials(file, folder, clock.wall().toISOString());
+  const { rig } = tried;
+  // The simulated machine is what its file says, whatever trials make of it.
+  const { openLine, simulateFault } = lineFor(file, options.seed, clock);
   const link = createRigLink(rig, openLine, clock);
   const facts = {
     mission: randomUUID(),
@@ -47,8 +53,8 @@ export const startConsole = async (
   };
   const recorder = await openRecorder(options.missionsDir, facts, clock);
   return createConsole({
-    rig,
-    summary: summaryOf(rig),
+    tried,
+    summary: summaryOf(tried),
     link,
     recorder,
     clock,
@@ -74,7 +80,7 @@ const lineFor = (
   return { openLine: simulated.openLine, simulateFault: (name) => simulated.fault(name as Fault) };
 };
 
-const summaryOf = (rig: RigDescription): RigSummary => ({
+const summaryOf = ({ rig, companion, payout, standings, trouble }: TriedRig): RigSummary => ({
   name: rig.name,
   simulated: rig.simulated,
   file: rig.file,
@@ -85,6 +91,11 @@ const summaryOf = (rig: RigDescription): RigSummary => ({
   limits: rig.limits,
   margin: defaultMargin(rig.body),
   catalogue: MEASURED_VALUES.filter((value) => !rig.body.measured.includes(value)),
+  machine: { body: finiteBody(rig.body), muscles: rig.muscles, limits: rig.limits },
+  payout,
+  trials: standings,
+  companion,
+  companionTrouble: trouble,
   camera: cameraOf(rig),
   tipRetractor:
     rig.reads.tip_retractor_attached !== undefined
@@ -101,6 +112,20 @@ const summaryOf = (rig: RigDescription): RigSummary => ({
     type: signal.type,
   })),
 });
+
+/** JSON has no infinity: the largest number stands for it. */
+const finiteBody = (body: BodyDescription): BodyDescription => {
+  const finite = (loss: TipLoss): TipLoss => ({
+    ...loss,
+    rateCoefficient: Math.min(loss.rateCoefficient, Number.MAX_VALUE),
+  });
+  return {
+    ...body,
+    growth: finite(body.growth),
+    inversion: finite(body.inversion),
+    freeEnd: Math.min(body.freeEnd, Number.MAX_VALUE),
+  };
+};
 
 const cameraOf = (rig: RigDescription): CameraSource =>
   rig.camera.kind === 'drawn' ? { kind: 'drawn', passages: leatPassages(rig.body.radius) } : rig.camera;

@@ -134,19 +134,28 @@ export const standingOf = (
 ): Standing | null => {
   const { shape, pressure, pressureBand } = inputOf(judge, rig, around, 0);
   if (shape === null || pressure === null) return null;
-  return judgeStanding({
-    shape,
-    arms: judge.arms,
-    body: rig.body,
-    pressure,
-    pressureBand,
-    pressureMin: rig.limits.bodyPressureMin,
-    pressureMax: rig.limits.bodyPressureMax,
-    tipSpeed: rig.limits.tipSpeed,
-    margin: defaultMargin(rig.body),
-    tension: goodValue(around.readings.tail_tension, around.now, rig.limits.readingAge),
-  });
+  return finiteStanding(
+    judgeStanding({
+      shape,
+      arms: judge.arms,
+      body: rig.body,
+      pressure,
+      pressureBand,
+      pressureMin: rig.limits.bodyPressureMin,
+      pressureMax: rig.limits.bodyPressureMax,
+      tipSpeed: rig.limits.tipSpeed,
+      margin: defaultMargin(rig.body),
+      tension: goodValue(around.readings.tail_tension, around.now, rig.limits.readingAge),
+    }),
+  );
 };
+
+/** JSON has no infinity: the largest number stands for it. */
+const finiteStanding = ({ hold, growth, hoop }: Standing): Standing => ({
+  hold: { ...hold, ratio: Math.min(hold.ratio, Number.MAX_VALUE) },
+  growth: { ...growth, stallLength: Math.min(growth.stallLength, Number.MAX_VALUE) },
+  hoop: hoop === null ? null : Math.min(hoop, Number.MAX_VALUE),
+});
 
 /** Body pressure that growth takes at rest, at this length and shape [Pa]; null while the shape is not known. */
 export const growthPressureOf = (estimate: Estimate, rig: RigDescription): number | null =>

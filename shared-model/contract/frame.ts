@@ -4,6 +4,8 @@ import type { Trip } from '../retraction/pull-watch.ts';
 import type { Standing } from '../retraction/standing.ts';
 import type { Refusal, WayBack } from '../retraction/verdict.ts';
 import type { Pose, Vec3 } from '../shape/vector.ts';
+import type { TrialStanding } from '../trials/apply-trials.ts';
+import type { TrialMachine } from '../trials/trial.ts';
 import type { Readings } from './reading.ts';
 import type { Wish } from './request.ts';
 
@@ -174,6 +176,13 @@ export interface RigSummary {
   readonly margin: number;
   /** Body values that are catalogue values, not measured on this machine. */
   readonly catalogue: readonly string[];
+  /** What the bench's fits take from the machine, how its trials stand, and the file that keeps them. */
+  readonly machine: TrialMachine;
+  readonly payout: { readonly scale: number; readonly offset: number };
+  readonly trials: readonly TrialStanding[];
+  readonly companion: string;
+  /** Why the companion is left out; null where it is not. */
+  readonly companionTrouble: string | null;
   readonly camera: CameraSource;
   readonly tipRetractor: 'sensed' | 'declared' | 'none';
   /** One line a signal for the Rig tab: where it is read and how. */

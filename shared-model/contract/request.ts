@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { TRIAL_KINDS, trialPointsSchema } from '../trials/trial.ts';
 
 /** Short text a person typed. */
 const text = z.string().max(2000);
@@ -87,6 +88,17 @@ export const requestSchema = z.discriminatedUnion('kind', [
     ]),
   }),
   z.strictObject({ kind: z.literal('list-missions') }),
+  /** A steady reading for a trial of the bench; answers with a `BenchReading`. */
+  z.strictObject({ kind: z.literal('bench-take'), trial: z.enum(TRIAL_KINDS) }),
+  /** Keeps a trial: fitted anew by the console from its points, and added to the rig file's companion. */
+  z.strictObject({
+    kind: z.literal('bench-save'),
+    trial: trialPointsSchema,
+    initials: z.string().trim().min(1).max(12),
+    expires: z.iso.datetime(),
+  }),
+  /** All trials of this machine, oldest first; answers with `TrialRecord`s. */
+  z.strictObject({ kind: z.literal('bench-list') }),
 ]);
 export type ConsoleRequest = z.infer<typeof requestSchema>;
 export type RequestKind = ConsoleRequest['kind'];
@@ -97,12 +109,29 @@ export const WATCHER_REQUESTS: readonly RequestKind[] = [
   'take-over',
   'list-missions',
   'preview-remedy',
+  'bench-list',
 ];
 
 /** The answer to one request. `text` speaks to a person. */
 export type Answer =
   | { readonly ok: true; readonly value?: unknown }
   | { readonly ok: false; readonly code: string; readonly text: string };
+
+/** Means over a second for a trial; SI. Null: not measured on this rig, or not good. */
+export interface BenchReading {
+  /** As the encoder gives it, before any correction by an earlier trial. */
+  readonly payout: number;
+  readonly length: number;
+  /** Total bend of the body as estimated [rad]. */
+  readonly turn: number;
+  readonly pressure: number | null;
+  readonly tension: number | null;
+  /** Pressure of the muscle that works hardest. */
+  readonly muscle: number | null;
+  readonly count: number;
+  /** Standard deviations. */
+  readonly spread: Readonly<Record<'payout' | 'pressure' | 'tension' | 'muscle', number | null>>;
+}
 
 /** One mission folder as it lies on disk. Times are RFC 3339 UTC; lengths in metres. */
 export interface MissionOnDisk {

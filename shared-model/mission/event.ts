@@ -72,6 +72,14 @@ export const missionEventSchema = z.discriminatedUnion('kind', [
     state: z.enum(['attached', 'absent']),
     source: z.enum(['sensed', 'declared']),
   }),
+  /** A trial of the bench was kept, in force from the console's next start. */
+  z.strictObject({
+    ...stamp,
+    kind: z.literal('trial-saved'),
+    trial: z.string(),
+    initials: z.string(),
+    values: z.array(z.strictObject({ name: z.string(), value: z.number(), halfWidth: z.number() })),
+  }),
   /** A person asked for it to be engaged or released, or declared that it is. */
   z.strictObject({ ...stamp, kind: z.literal('tip-retractor-asked'), attached: z.boolean() }),
   /** Something went wrong under way: a fold of the body is suspected, or a drive does not follow. */

@@ -33,18 +33,21 @@ export const applyTrials = (
   const standings = TRIAL_KINDS.map((kind): TrialStanding => {
     const record = newest(records, kind);
     if (record === null) return { kind, state: 'none', record };
-    return { kind, state: Date.parse(record.expires) > Date.parse(now) ? 'measured' : 'expired', record };
+    return { kind, state: isBefore(now, record.expires) ? 'measured' : 'expired', record };
   });
   let applied: AppliedTrials = { ...machine, payout: { scale: 1, offset: 0 }, standings };
   for (const standing of standings) applied = applyOne(applied, standing, machine.body);
   return applied;
 };
 
+/** Of two RFC 3339 times in UTC, by their whole seconds. */
+const isBefore = (a: string, b: string): boolean => a.slice(0, 19) < b.slice(0, 19);
+
 const newest = (records: readonly TrialRecord[], kind: TrialKind): TrialRecord | null =>
   records
     .filter((record) => record.trial.kind === kind)
     .reduce<TrialRecord | null>(
-      (best, one) => (best === null || Date.parse(one.date) >= Date.parse(best.date) ? one : best),
+      (best, one) => (best === null || !isBefore(one.date, best.date) ? one : best),
       null,
     );
 

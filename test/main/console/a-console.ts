@@ -2,6 +2,7 @@ import { createConsole, type RunningConsole } from '../../../main/console/consol
 import type { Recorder } from '../../../main/record/recorder.ts';
 import { createRigLink } from '../../../main/rig/link.ts';
 import type { SerialLine } from '../../../main/rig/serial-line.ts';
+import { withTrials } from '../../../main/rig/trials.ts';
 import { type BuiltInRig, createBuiltInRig } from '../../../main/simulator/built-in-rig.ts';
 import type {
   ConsoleFrame,
@@ -38,7 +39,7 @@ export interface Bench {
 }
 
 /** The whole console on the built-in rig, in virtual time, with a recorder between master and slave. */
-export const startBench = async (seed = 5): Promise<Bench> => {
+export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promise<Bench> => {
   const clock = createVirtualClock();
   const description = builtInRig();
   const rig = createBuiltInRig(description, { seed, clock });
@@ -67,7 +68,7 @@ export const startBench = async (seed = 5): Promise<Bench> => {
     );
   };
   const console_ = createConsole({
-    rig: description,
+    tried: withTrials(description, companionFolder, '2026-01-01T00:00:00Z'),
     summary: { name: description.name } as RigSummary,
     link: createRigLink(description, openLine, clock),
     recorder: memoryRecorder(events),

@@ -1,0 +1,111 @@
+import { mkdtempSync, readFileSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
+import { describe, expect, test } from 'vitest';
+import { withTrials } from '../../../main/rig/trials.ts';
+import type { BenchReading } from '../../../shared-model/contract/request.ts';
+import type { TrialRecord } from '../../../shared-model/trials/trial.ts';
+import { builtInRig } from '../rig/built-in-rig.ts';
+import { type Bench, startBench } from './a-console.ts';
+
+const GROW = { motion: { kind: 'grow' } } as const;
+const RETRACT = { motion: { kind: 'retract' }, tipSpeed: 0.05 } as const;
+const length = (bench: Bench): number => bench.frame().estimate?.length ?? Number.NaN;
+const folder = (): string => mkdtempSync(join(tmpdir(), 'foldback-bench-'));
+const take = async (bench: Bench, trial: string) =>
+  bench.console_.request('driver', { kind: 'bench-take', trial });
+const reading = (answer: Awaited<ReturnType<typeof take>>): BenchReading => {
+  if (!answer.ok) throw new Error(answer.text);
+  return answer.value as BenchReading;
+};
+
+describe('the bench of the console', () => {
+  test('gives the mean of a second at rest, and nothing while something moves or is not read', async () => {
+    const bench = await startBench();
+    await bench.hold(GROW, () => length(bench) >= 1);
+    await bench.run(1.2);
+    const rest = reading(await take(bench, 'tail-length'));
+    expect(rest.payout).toBeCloseTo(bench.rig.truth().payout, 1);
+    expect(rest.count).toBeGreaterThan(10);
+    expect(rest.spread.pressure).toBeGreaterThan(0);
+    const moving = bench.hold(GROW, () => false, 1.5);
+    await bench.run(1);
+    expect(await take(bench, 'tail-length')).toMatchObject({ ok: false });
+    await moving;
+    expect(await take(bench, 'tail-length')).toMatchObject({ ok: false, code: 'not-steady' });
+    bench.rig.fault('dead-unit');
+    await bench.run(3);
+    expect(await take(bench, 'tail-length')).toMatchObject({ ok: false, code: 'not-steady' });
+    await bench.close();
+  });
+
+  test('gives the tension of the last steady pull, not that at rest', async () => {
+    const bench = await startBench();
+    await bench.hold(GROW, () => length(bench) >= 1);
+    expect(await take(bench, 'inversion')).toMatchObject({ ok: false, code: 'not-steady' });
+    await bench.hold(RETRACT, () => false, 3.5);
+    const rest = bench.frame().readings.tail_tension;
+    const pull = reading(await take(bench, 'inversion'));
+    // (A/2)(P + Y_r + rate): between the lossless 90 N and 20 % more at 9 kPa (work balance).
+    expect(pull.tension).toBeGreaterThan(91);
+    expect(pull.tension).toBeLessThan(112);
+    expect(rest?.quality === 'good' && rest.value).toBeLessThan(pull.tension ?? 0);
+    await bench.close();
+  });
+
+  const trial = {
+    kind: 'tail-length',
+    points: [1, 2, 3, 4, 5].map((tape) => ({ tape, payout: (2 * tape) / 1.01 })),
+  };
+  const save = (bench: Bench, over = {}) =>
+    bench.console_.request('driver', {
+      kind: 'bench-save',
+      trial,
+      initials: 'ab',
+      expires: '2027-01-01T00:00:00Z',
+      ...over,
+    });
+
+  test('keeps a trial that it fitted itself, tells the record, and puts it in force at the next start', async () => {
+    const dir = folder();
+    const bench = await startBench(5, dir);
+    expect(await save(bench)).toMatchObject({ ok: true });
+    expect(bench.events.find((event) => event.kind === 'trial-saved')).toMatchObject({ initials: 'ab' });
+    const list = await bench.console_.request('driver', { kind: 'bench-list' });
+    const [record] = list.ok ? (list.value as TrialRecord[]) : [];
+    expect(record?.values[0]?.value).toBeCloseTo(1.01, 6);
+    expect(record?.before[0]?.value).toBe(1);
+    const tried = withTrials(builtInRig(), dir, '2026-06-01T00:00:00Z');
+    expect(tried.rig.reads.tail_payout?.scale).toBeCloseTo(1.01, 6);
+    expect(tried.standings.find((one) => one.kind === 'tail-length')?.state).toBe('measured');
+    await bench.close();
+  });
+
+  test('keeps none that has too few points, no initials, or would have expired', async () => {
+    const dir = folder();
+    const bench = await startBench(5, dir);
+    for (const [over, code] of [
+      [{ trial: { ...trial, points: trial.points.slice(0, 2) } }, 'no-fit'],
+      [{ initials: '   ' }, 'bad-request'],
+      [{ expires: '2025-01-01T00:00:00Z' }, 'expired'],
+      [{ trial: { kind: 'tail-length', points: [{ tape: Number.NaN, payout: 1 }] } }, 'bad-request'],
+    ] as const)
+      expect(await save(bench, over)).toMatchObject({ ok: false, code });
+    expect(() => readFileSync(join(dir, 'built-in.bench.yaml'))).toThrow();
+    await bench.close();
+  });
+
+  test('leaves out a companion that cannot be read, and then nothing counts as measured', async () => {
+    const { rig, trouble } = withTrials(
+      { ...builtInRig(), file: join(import.meta.dirname, 'nothing.yaml') },
+      import.meta.dirname,
+      '2026-06-01T00:00:00Z',
+    );
+    expect([trouble, rig.body.measured.length]).toEqual([null, 4]);
+    const dir = folder();
+    writeFileSync(join(dir, 'built-in.bench.yaml'), 'not: [a list');
+    const broken = withTrials(builtInRig(), dir, '2026-06-01T00:00:00Z');
+    expect(broken.trouble).toContain('built-in.bench.yaml');
+    expect(broken.rig.body.measured).toEqual([]);
+  });
+});
