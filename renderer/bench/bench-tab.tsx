@@ -5,6 +5,7 @@ import { consoleApi } from '../connection/console-api.ts';
 import { chooseSpeed } from '../drive/use-hand.ts';
 import { dateAndTime, fixed } from '../parts/format.ts';
 import { useConsole } from '../store/console-store.ts';
+import { openTrial, useOpenTrial } from './drafts.ts';
 import { TRIAL_GUIDES, VALUE_NAMES } from './trial-guide.ts';
 import { TrialPanel } from './trial-panel.tsx';
 import { ValuesBehind } from './values-behind.tsx';
@@ -12,18 +13,17 @@ import { ValuesBehind } from './values-behind.tsx';
 /** The trials of this machine: how they stand, one of them step by step, and all that was ever measured. */
 export const BenchTab = () => {
   const rig = useConsole((state) => state.rig);
-  const [open, setOpen] = useState<TrialKind | null>(null);
+  const open = useOpenTrial();
   const [records, reload] = useRecords();
   if (rig === null) return <p className="page">Waiting for the console.</p>;
   const guide = TRIAL_GUIDES.find((one) => one.kind === open);
   const choose = (kind: TrialKind): void => {
     // Trials pull slowly: what is measured is the force at rest.
     chooseSpeed('fine');
-    setOpen(open === kind ? null : kind);
+    openTrial(open === kind ? null : kind);
   };
   return (
     <div className="page bench">
-      <ValuesBehind />
       <section className="panel">
         <h2>Trials</h2>
         {rig.companionTrouble === null ? null : (
@@ -57,6 +57,7 @@ export const BenchTab = () => {
         </p>
       </section>
       {guide === undefined ? null : <TrialPanel key={guide.kind} guide={guide} onSaved={reload} />}
+      <ValuesBehind />
       <History records={records} />
     </div>
   );

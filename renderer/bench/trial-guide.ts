@@ -1,5 +1,6 @@
 import type { BenchReading } from '../../shared-model/contract/request.ts';
 import type { TrialKind, TrialPoints, TrialValue } from '../../shared-model/trials/trial.ts';
+import type { Point } from './drafts.ts';
 
 /** One number of a point: read from the rig, or measured by a person. On screen in `unit`, inside in SI. */
 export interface TrialField {
@@ -164,7 +165,7 @@ export const VALUE_NAMES: Readonly<
 };
 
 /** Points in SI from what stands in the fields. */
-export const trialOf = (kind: TrialKind, points: readonly Readonly<Record<string, number>>[]): TrialPoints =>
+export const trialOf = (kind: TrialKind, points: readonly Point[]): TrialPoints =>
   ({ kind, points }) as unknown as TrialPoints;
 
 /** A number as a person types it, also with a decimal comma; null where it is none. */

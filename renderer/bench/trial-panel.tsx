@@ -7,12 +7,11 @@ import { fixed } from '../parts/format.ts';
 import { HoldButton } from '../parts/hold-button.tsx';
 import { report } from '../parts/notice.ts';
 import { useConsole } from '../store/console-store.ts';
+import { type Point, setPoints, setTexts, usePoints, useTexts } from './drafts.ts';
 import { numberOf, type TrialField, type TrialGuide, trialOf } from './trial-guide.ts';
 import { ValueTable } from './value-table.tsx';
 
 const TrialPlot = lazy(() => import('./trial-plot.tsx').then(({ TrialPlot }) => ({ default: TrialPlot })));
-
-type Point = Readonly<Record<string, number>>;
 
 /** One trial, step by step: readings from the rig, what the person measured, the fit as it grows, and its record. */
 export const TrialPanel = ({
@@ -23,7 +22,7 @@ export const TrialPanel = ({
   readonly onSaved: () => void;
 }) => {
   const machine = useConsole(({ rig }) => rig?.machine ?? null);
-  const [points, setPoints] = useState<readonly Point[]>([]);
+  const points = usePoints(guide.kind);
   const fit = useMemo(
     () => (machine === null ? null : fitTrial(trialOf(guide.kind, points), machine)),
     [machine, points, guide.kind],
@@ -37,19 +36,26 @@ export const TrialPanel = ({
           <li key={step}>{step}</li>
         ))}
       </ol>
-      <PointForm guide={guide} onAdd={(point) => setPoints([...points, point])} />
-      <PointTable
-        fields={guide.fields}
-        points={points}
-        onRemove={(at) => setPoints(points.filter((_, i) => i !== at))}
-      />
-      {fit === null || points.length === 0 ? null : <Fit fit={fit} />}
+      <PointForm guide={guide} onAdd={(point) => setPoints(guide.kind, [...points, point])} />
+      <div className="trial-work">
+        <PointTable
+          fields={guide.fields}
+          points={points}
+          onRemove={(at) =>
+            setPoints(
+              guide.kind,
+              points.filter((_, i) => i !== at),
+            )
+          }
+        />
+        {fit === null || points.length === 0 ? null : <Fit fit={fit} />}
+      </div>
       <SaveForm
         kind={guide.kind}
         points={points}
         ready={fit?.ok === true}
         onSaved={() => {
-          setPoints([]);
+          setPoints(guide.kind, []);
           onSaved();
         }}
       />
@@ -65,7 +71,8 @@ const PointForm = ({
   readonly guide: TrialGuide;
   readonly onAdd: (point: Point) => void;
 }) => {
-  const [texts, setTexts] = useState<Readonly<Record<string, string>>>({});
+  const texts = useTexts(guide.kind);
+  const fill = (next: Readonly<Record<string, string>>): void => setTexts(guide.kind, next);
   const take = async (): Promise<void> => {
     const answer = await consoleApi.request({ kind: 'bench-take', trial: guide.kind });
     const reading = answer.ok ? (answer.value as BenchReading) : null;
@@ -75,7 +82,7 @@ const PointForm = ({
       const value = field.read?.(reading);
       return value == null ? [] : [[field.name, (value / field.factor).toFixed(field.places)] as const];
     });
-    setTexts({ ...texts, ...Object.fromEntries(read) });
+    fill({ ...texts, ...Object.fromEntries(read) });
   };
   const add = (): void => {
     const entries = guide.fields.map((field) => [field, numberOf(texts[field.name] ?? '')] as const);
@@ -90,7 +97,7 @@ const PointForm = ({
     onAdd(
       Object.fromEntries(entries.map(([field, value]) => [field.name, (value as number) * field.factor])),
     );
-    setTexts({});
+    fill({});
   };
   return (
     <div className="trial-form">
@@ -108,7 +115,7 @@ const PointForm = ({
           <input
             inputMode="decimal"
             value={texts[field.name] ?? ''}
-            onChange={(event) => setTexts({ ...texts, [field.name]: event.target.value })}
+            onChange={(event) => fill({ ...texts, [field.name]: event.target.value })}
           />
         </label>
       ))}
@@ -164,12 +171,12 @@ const PointTable = (props: {
 
 const Fit = ({ fit }: { readonly fit: TrialFit }) =>
   fit.ok ? (
-    <>
+    <div className="trial-fit">
       <ValueTable values={fit.values} />
       <Suspense fallback={<p className="trace">Drawing…</p>}>
         <TrialPlot plot={fit.plot} />
       </Suspense>
-    </>
+    </div>
   ) : (
     <p role="status">▲ {fit.why}</p>
   );

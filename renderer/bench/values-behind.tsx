@@ -24,13 +24,13 @@ const VALUES: readonly {
     value: 'inversionYield',
     name: 'Pressure that inversion takes',
     decides: 'the pull that turns the tip',
-    trial: 'Trial “Inversion tension” below.',
+    trial: 'Trial “Inversion tension” above.',
   },
   {
     value: 'friction',
     name: 'Friction of the tail on the wall',
     decides: 'the pull that reaches the base through bends',
-    trial: 'Trial “Inversion tension” below.',
+    trial: 'Trial “Inversion tension” above.',
   },
 ];
 
@@ -78,7 +78,7 @@ export const ValuesBehind = () => {
       </table>
       <p className="trace" style={{ marginTop: 8 }}>
         The two moduli are entered under <code>body</code> in {file} and listed there under{' '}
-        <code>measured</code>; the trials below give the rest.
+        <code>measured</code>; the trials above give the rest.
       </p>
     </section>
   );
