@@ -37,6 +37,10 @@ test('Stop and every reading stay on screen on every tab, in both themes and siz
   await operator.growTo(4);
   await operator.button('Log waypoint').click();
   await expect(operator.alert()).toContainText('Waypoint 1 logged');
+  // A remedy chosen shows its outlook beside the present one.
+  const remedy = page.getByRole('group', { name: 'What would help' }).getByRole('button').nth(1);
+  await remedy.click();
+  await expect(remedy).toHaveAttribute('aria-pressed', 'true');
   for (const theme of ['day', 'night']) {
     for (const size of SIZES) {
       await page.setViewportSize(size);

@@ -2,6 +2,7 @@ import type { Limits } from '../body/body.ts';
 import type { SampledShape } from '../shape/sampled-shape.ts';
 import { createJudgeSpace, type JudgeSpace, judgeWayBack } from './judge.ts';
 import { type OtherBody, straightenedTip, thinned } from './other-body.ts';
+import { HOOP_FACTOR } from './standing.ts';
 import type { Remedy } from './verdict.ts';
 import type { WayBackInput } from './way-back-input.ts';
 
@@ -67,7 +68,11 @@ const pressureRemedy = (
   const rough = thinned(body, SEARCHED);
   const space = createJudgeSpace(rough.shape.count);
   const ratioAt = (pressure: number) => worstRatio({ ...input, pressure }, rough, space);
-  const value = bestPressure(ratioAt, limits.bodyPressureMin, limits.bodyPressureMax);
+  const { hoopStrength, radius } = input.body;
+  const hoopMax = hoopStrength === null ? Number.POSITIVE_INFINITY : hoopStrength / (HOOP_FACTOR * radius);
+  const most = Math.min(limits.bodyPressureMax, hoopMax);
+  if (!(most >= limits.bodyPressureMin)) return null;
+  const value = bestPressure(ratioAt, limits.bodyPressureMin, most);
   const ratio = worstRatio({ ...input, pressure: value }, body);
   const clears = ratio >= input.margin;
   if (!clears && !(ratio >= present + WORTHWHILE)) return null;

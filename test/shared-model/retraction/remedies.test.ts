@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { Limits } from '../../../shared-model/body/body.ts';
 import { judgeWayBack } from '../../../shared-model/retraction/judge.ts';
-import { findRemedies } from '../../../shared-model/retraction/remedies.ts';
+import { outlookLine } from '../../../shared-model/retraction/outlook-line.ts';
+import { findRemedies, remedied } from '../../../shared-model/retraction/remedies.ts';
 import type { Remedy } from '../../../shared-model/retraction/verdict.ts';
 import type { WayBackInput } from '../../../shared-model/retraction/way-back-input.ts';
 import { bodyB, straight, wayBackInput } from './way-back-input.ts';
@@ -109,5 +110,41 @@ describe('the remedies of a pull that would buckle', () => {
       judgeWayBack(wayBackInput([hooked[0]!, { ...hooked[1]!, length: length - 0.2 }])).kind;
     expect(upTo(value)).toBe('clear');
     expect(upTo(value + 0.01)).toBe('would-buckle');
+  });
+
+  it('offer no pressure that wall or seam may not bear', () => {
+    // A fabric that is pulled too low: without a wall's limit, a higher pressure is offered.
+    const weak = { ...bodyB, wall: 1, E: 10_000, G: 0, eccentricityFloor: 0, collapseFraction: 1 };
+    const input = (hoopStrength: number | null) =>
+      wayBackInput(straight(0.6), { body: { ...weak, hoopStrength }, pressure: 2.2e3, margin: 1.04 });
+    const offered = (hoopStrength: number | null) =>
+      only('body-pressure', findRemedies(input(hoopStrength), limits, false))?.value ?? 0;
+    expect(offered(null)).toBeGreaterThan(2600);
+    // PR·4 = 2,600 Pa × 0.04 m × 4 (thin shell; the factor is common practice).
+    expect(offered(2600 * 0.04 * 4)).toBeLessThanOrEqual(2600);
+    expect(offered(1000 * 0.04 * 4)).toBe(0);
+  });
+
+  it('can each be shown as the outlook that they give, which ends in the ratio they promise', () => {
+    const pressured = wayBackInput(long, { ...filmAtHighPressure, margin: 1 });
+    const bent = wayBackInput(
+      [
+        { length: 0.2, curvature: 0, plane: 0 },
+        { length: 0.15, curvature: 4, plane: 0 },
+      ],
+      { margin: 1.2 },
+    );
+    for (const input of [pressured, bent])
+      for (const remedy of findRemedies(input, limits, true)) {
+        const shown = remedied(input, remedy);
+        if (remedy.kind === 'tip-retractor' || remedy.kind === 'shorter') expect(shown).toBeNull();
+        else {
+          const { low, high } = shown!.space;
+          const worst = Math.min(...low.ratio.subarray(0, low.count), ...high.ratio.subarray(0, high.count));
+          expect(worst).toBeCloseTo(remedy.ratio as number, 6);
+          const line = outlookLine(shown!.shape, shown!.space, input.margin);
+          expect(line.length.at(-1)).toBeCloseTo(input.shape!.s[input.shape!.count - 1]!, 3);
+        }
+      }
   });
 });
