@@ -1,5 +1,4 @@
 import type {
-  ConsoleFrame,
   ConsoleHello,
   ConsoleMessage,
   LinkStatus,
@@ -16,9 +15,7 @@ import {
 } from '../../shared-model/contract/request.ts';
 import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
 import { type Judgement, PermittedDrive } from '../../shared-model/retraction/interlock.ts';
-import { clearFold, rearmWatch, stepWatch, WATCHING } from '../../shared-model/retraction/pull-watch.ts';
 import type { WayBack } from '../../shared-model/retraction/verdict.ts';
-import { bodyLine } from '../../shared-model/shape/body-line.ts';
 import { createEstimate, type Estimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
 import type { Clock } from '../clock.ts';
 import type { Recorder } from '../record/recorder.ts';
@@ -29,7 +26,6 @@ import { acknowledgeAlarm, EMPTY_BOARD, listAlarms, stepAlarms } from './alarms.
 import { approachSpeed } from './approach.ts';
 import { type Backtracking, stepBacktracking } from './backtracking.ts';
 import { createBench } from './bench.ts';
-import { askedSpeed, holdStatus } from './hold-status.ts';
 import {
   expireLease,
   LEASE_LIFE,
@@ -41,11 +37,12 @@ import {
 } from './lease.ts';
 import { createMissionLog } from './mission-log.ts';
 import { createMissionNotes } from './mission-notes.ts';
+import { createPublisher } from './publisher.ts';
+import { createPullGuard } from './pull-guard.ts';
 import { answerRequest, type RequestContext } from './requests.ts';
 import { sampleOf } from './sample.ts';
 import { NO_RAMPS, stepRamps } from './setpoint-ramps.ts';
 import { createTipRetractor, retractorState, retractorStatus } from './tip-retractor.ts';
-import { watchedTick } from './watched-tick.ts';
 import {
   createWayBackJudge,
   followShape,
@@ -84,9 +81,6 @@ export interface RunningConsole {
 
 /** One tick at 20 Hz, or as fast as the line allows [s]. */
 const TICK = 0.05;
-/** Large parts of a frame are sent at most this often [s]. */
-const BODY_EVERY = 0.1;
-const OUTLOOK_EVERY = 0.5;
 
 export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const { link, recorder, clock } = parts;
@@ -96,6 +90,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const notes = createMissionNotes((event) => void mission.append(event));
   const clients = new Set<string>();
   const judge = createWayBackJudge(rig);
+  const guard = createPullGuard(rig);
   const described = new Set(Object.keys(rig.reads));
   const hasRetractorDrive = rig.writes.tip_retractor_speed_setpoint !== undefined;
   let driver: string | null = null;
@@ -104,21 +99,12 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   let estimate = createEstimate();
   let ramps = NO_RAMPS;
   let retractor = createTipRetractor(rig.reads.tip_retractor_attached !== undefined);
-  let watch = WATCHING;
-  /** What the rig has last confirmed. */
-  let driven: PermittedDrive | null = null;
-  let attachedBefore = false;
   let around: Surroundings = { estimate, readings: {}, retractorAttached: false, now: Number.NaN };
   let board = EMPTY_BOARD;
   let readings: Readings = {};
   let confirmed = false;
   let backtracking: Backtracking | null = null;
-  let seq = 0;
   let lastTickAt = Number.NaN;
-  let bodyAt = Number.NEGATIVE_INFINITY;
-  let outlookAt = Number.NEGATIVE_INFINITY;
-  let bodyChanged = true;
-  let sendAll = true;
   let running = true;
   let ticking: Promise<void> = Promise.resolve();
   let cancelTick: () => void = () => {};
@@ -126,6 +112,11 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const broadcast = (message: ConsoleMessage): void => {
     for (const client of clients) parts.send(client, message);
   };
+
+  const publisher = createPublisher(broadcast, () => ({
+    outlook: presentLine(judge, rig, around),
+    standing: standingOf(judge, rig, around),
+  }));
 
   /** Zero speeds at once, whatever the tick is doing. */
   const stopNow = (): void => void link.stop(PermittedDrive.holdStill(clock.now(), hasRetractorDrive));
@@ -157,7 +148,6 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     const attached = gripState === 'attached';
     notes.retractor(gripState, retractor.source);
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
-    bodyChanged ||= estimate.changedFrom < estimate.path.count;
     followShape(judge, estimate);
     noteTrips(attached, now);
     around = { estimate, readings, retractorAttached: attached, now };
@@ -173,9 +163,11 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     for (const event of stepped.events) void mission.append(event);
     const verdict = backtracking === null ? wayBack : judgeTo(judge, rig, around, backtracking.length);
     const judged = decide(stepped.wish, verdict, gripState, dt);
+    const ends = guard.endsPress(judged);
+    if (ends !== null) lease = revokeLease(lease, ends);
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
-    driven = confirmed ? judged.drive : null;
+    guard.wrote(confirmed ? judged.drive : null);
     bench.note(readings, estimate.frame, turnOf(estimate), judged.tipSpeed, now);
     notes.motion(estimate.frame, judged.tipSpeed, now);
     notes.refusal(judged, verdict, lease, estimate.frame?.length ?? null);
@@ -183,7 +175,23 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     recorder.sample(
       sampleOf({ readings, estimate: estimate.frame, wayBack, wish: wishOf(lease, now), judged, now }),
     );
-    publish(judged, wayBack, gripState);
+    publisher.publish({
+      now,
+      link: link.status(),
+      readings,
+      estimate,
+      wayBack,
+      lease,
+      wish: wishOf(lease, now),
+      judged,
+      confirmed,
+      ramps,
+      tipRetractor: retractorStatus(retractor, gripState, wayBack, now),
+      backtracking,
+      foldSuspected: guard.watch().foldSuspected,
+      alarms: listAlarms(board),
+      recording: recorder.status(),
+    });
   };
 
   const remainingTo = (length: number): number | null => {
@@ -193,16 +201,9 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
 
   /** A drive that does not follow, a suspected fold or a grip that changed ends the press. */
   const noteTrips = (attached: boolean, now: number): void => {
-    const before = watch;
-    watch = stepWatch(watch, watchedTick(rig, readings, estimate, attached, driven, now));
-    const { trip } = watch;
-    if (trip !== null && trip !== before.trip) {
-      disarm(trip.text);
-      notes.tripped(trip, estimate.frame?.length ?? null);
-    }
-    if (attached !== attachedBefore && lease.state === 'held')
-      disarm(attached ? 'The tip retractor took hold.' : 'The tip retractor let go, or its signal is gone.');
-    attachedBefore = attached;
+    const { trip, ends } = guard.step(readings, estimate, attached, now);
+    if (trip !== null) notes.tripped(trip, estimate.frame?.length ?? null);
+    if (ends !== null && (trip !== null || lease.state === 'held')) disarm(ends);
   };
 
   const decide = (
@@ -240,7 +241,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       judgedAt: now,
       remaining,
       approachSpeed: remaining === null ? Number.NaN : approachSpeed(remaining),
-      watch,
+      watch: guard.watch(),
       tipRetractorAttached: retractorAttached,
       tipRetractorState: gripState,
       hasRetractorDrive,
@@ -268,55 +269,17 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   };
 
   const noteAlarms = (now: number): void => {
-    const inputs = { link: link.status(), readings, limits: rig.limits, recording: recorder.status(), watch };
+    const inputs = {
+      link: link.status(),
+      readings,
+      limits: rig.limits,
+      recording: recorder.status(),
+      watch: guard.watch(),
+    };
     const conditions = alarmConditions({ ...inputs, emergencyStopWired: rig.emergencyStopWired });
     const stepped = stepAlarms(board, conditions, now);
     board = stepped.board;
     notes.alarms(stepped.changes);
-  };
-
-  const publish = (judged: Judgement, wayBack: WayBack, gripState: TipRetractorStatus['state']): void => {
-    const { now } = around;
-    const withBody = sendAll || (bodyChanged && now - bodyAt >= BODY_EVERY);
-    const withOutlook = sendAll || now - outlookAt >= OUTLOOK_EVERY;
-    if (withBody) [bodyAt, bodyChanged] = [now, false];
-    if (withOutlook) outlookAt = now;
-    sendAll = false;
-    const frame: ConsoleFrame = {
-      kind: 'frame',
-      seq: seq++,
-      at: now,
-      link: link.status(),
-      readings,
-      estimate: estimate.frame,
-      wayBack,
-      hold: holdStatus(lease),
-      drive: {
-        asked: askedSpeed(wishOf(lease, now)),
-        permitted: judged.tipSpeed,
-        confirmed,
-        bodyPressureSetpoint: ramps.bodyPressure,
-        musclePressureSetpoints: [],
-      },
-      refusal: judged.refusal,
-      tipRetractor: retractorStatus(retractor, gripState, wayBack, now),
-      backtrack:
-        backtracking === null
-          ? null
-          : {
-              target: backtracking.target,
-              remaining: remainingTo(backtracking.length) ?? 0,
-              arrived: backtracking.arrived,
-            },
-      foldSuspected: watch.foldSuspected,
-      alarms: listAlarms(board),
-      recording: recorder.status(),
-      ...(withBody ? { body: bodyLine(estimate.path) } : {}),
-      ...(withOutlook
-        ? { outlook: presentLine(judge, rig, around), standing: standingOf(judge, rig, around) }
-        : {}),
-    };
-    broadcast(frame);
   };
 
   const loop = (): void => {
@@ -362,11 +325,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       retractor = next;
     },
     previewRemedy: (kind) => remedyLine(judge, rig, around, kind),
-    clearFold: () => {
-      const was = watch.foldSuspected !== null;
-      watch = clearFold(watch);
-      return was;
-    },
+    clearFold: () => guard.clearFold(),
     acknowledge: (id) => {
       const stepped = acknowledgeAlarm(board, id);
       board = stepped.board;
@@ -376,7 +335,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     reconnect: () => {
       disarm('The link is opened again.');
       estimate = createEstimate();
-      watch = { ...WATCHING, foldSuspected: watch.foldSuspected };
+      guard.restart();
       judge.arms.count = 0;
       link.reconnect();
     },
@@ -394,7 +353,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     }
     const before = lease;
     lease = renewLease(lease, { client, press: request.press, seq: request.seq, wish: request.wish }, now);
-    if (lease.state === 'held' && before.state !== 'held') watch = rearmWatch(watch);
+    if (lease.state === 'held' && before.state !== 'held') guard.rearm();
     if (lease.state !== 'held') {
       if (lease.state === 'burnt') stopNow();
       return {
@@ -450,7 +409,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     join: (client) => {
       clients.add(client);
       if (driver === null) driver = client;
-      sendAll = true;
+      publisher.sendAll();
       parts.send(client, hello(client));
     },
     leave: (client) => {

@@ -31,7 +31,7 @@ export interface DriveRequest {
   /** Speed profile towards the target: the most the tip may do at this distance [m/s]. */
   readonly approachSpeed: number;
   /** What has gone wrong under way: of this press, and a fold that nobody has ruled out yet. */
-  readonly watch: Pick<PullWatch, 'trip' | 'foldSuspected'>;
+  readonly watch: Pick<PullWatch, 'trip' | 'foldSuspected' | 'loose'>;
   readonly tipRetractorAttached: boolean;
   readonly tipRetractorState: TipRetractorStatus['state'];
   readonly hasRetractorDrive: boolean;

@@ -13,6 +13,8 @@ export interface PullWatch {
   /** Tail taken in at less tension than turning a tip can take [m], and whether the tail was known to be taut before. */
   readonly takenLoose: number;
   readonly taut: boolean;
+  /** Tail that was let out without tension since it was last taut: the tip did not take it [m]. */
+  readonly loose: number;
 }
 
 /** Way told and way gone in one direction, what lies back being forgotten little by little [m]. */
@@ -58,6 +60,7 @@ export const WATCHING: PullWatch = {
   tip: NOTHING_TOLD,
   takenLoose: 0,
   taut: false,
+  loose: 0,
 };
 
 /** Judged after so long at the speed told, so that a drive may start up [s], and over at least this way [m]. */
@@ -72,6 +75,8 @@ const LOOSE_SHARE = 0.6;
 const TURNING_SHARE = 0.8;
 /** A tail that holds this much at rest is taut. */
 const TAUT_SHARE = 0.3;
+/** A tail that holds less than this is not drawn by the tip. */
+const SLACK_SHARE = 0.02;
 /** Tail that may come in loose once it was taut [m], and beyond what may lie loose when it was not. */
 const LOOSE_MAX = 0.03;
 
@@ -94,6 +99,7 @@ export const stepWatch = (before: PullWatch, tick: WatchedTick): PullWatch => {
     ...loose,
     spool,
     tip,
+    loose: stepSlack(before.loose, tick, paidOut),
     foldSuspected: suspected,
     trip:
       before.trip ??
@@ -132,7 +138,7 @@ const lags = ({ told, gone }: Followed, speed: number): boolean =>
  * a pull from the base of a body that is long enough to fold tells, and only where tension is measured.
  */
 const stepLoose = (
-  { takenLoose, taut }: PullWatch,
+  { takenLoose, taut, loose }: PullWatch,
   tick: WatchedTick,
   paidOut: number | null,
 ): Pick<PullWatch, 'takenLoose' | 'taut'> => {
@@ -142,7 +148,17 @@ const stepLoose = (
     return { takenLoose: 0, taut: tension !== undefined && !tick.gripped && tension >= TAUT_SHARE * least };
   if (paidOut === null || tick.length <= tick.shortLength) return { takenLoose, taut };
   if (tension >= TURNING_SHARE * least) return { takenLoose: 0, taut: true };
+  // What is known to lie loose comes in first.
+  if (loose > 0) return { takenLoose: 0, taut };
   return { takenLoose: tension < LOOSE_SHARE * least ? takenLoose + Math.max(0, -paidOut) : 0, taut };
+};
+
+/** Tail let out that the tip does not draw lies loose: it is blocked, or pressure is short. Taut again, none does. */
+const stepSlack = (before: number, tick: WatchedTick, paidOut: number | null): number => {
+  const { tension, losslessTension: least } = tick;
+  if (tension === undefined || !(tension < TAUT_SHARE * least)) return 0;
+  if (tick.gripped || paidOut === null || !(tension < SLACK_SHARE * least)) return before;
+  return Math.max(0, before + paidOut);
 };
 
 const foldOf = ({ tension = 0, losslessTension }: WatchedTick, takenLoose: number): Trip => ({

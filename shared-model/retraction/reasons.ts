@@ -96,6 +96,12 @@ export const growReasons = (request: DriveRequest): Reason[] => {
       text: 'The tip retractor grips the tail; the tip cannot grow.',
       remedy: 'Release the tip retractor, then grow.',
     });
+  if (!(request.watch.loose <= request.limits.tailSlackMax))
+    reasons.push({
+      code: 'loose-tail',
+      text: `${request.watch.loose.toFixed(2)} m of tail lies loose: the tip does not take it.`,
+      remedy: 'Look at the picture: steer clear of what blocks the tip, or raise body pressure.',
+    });
   if (!(request.growthPressure !== null && Number.isFinite(request.growthPressure)))
     reasons.push({
       code: 'growth',

@@ -107,4 +107,19 @@ describe('the watch over a pull', () => {
     for (const bad of [undefined, Number.NaN])
       expect(play(resting, 100, { ...pulling, payout: bad, travel: bad }).trip).toBeNull();
   });
+
+  it('counts tail that is let out without tension, until the tail is taut again or taken in', () => {
+    const out = { spoolSpeed: 0.2, tension: 0.1 };
+    expect(play(resting, 20, { spoolSpeed: 0.2, tension: 60 }).loose).toBe(0);
+    const blocked = play(play(resting, 4, { ...out, spoolSpeed: 0 }), 30, out);
+    expect(blocked.loose).toBeCloseTo(0.3, 6);
+    expect(play(blocked, 1, { tension: 30 }).loose).toBe(0);
+    expect(play(blocked, 1, { tension: undefined }).loose).toBe(0);
+    const taken = play(blocked, 20, { spoolSpeed: -0.2, tension: 0.1 });
+    expect(taken.loose).toBeCloseTo(0.1, 6);
+    // What is known to lie loose may come in before a fold is suspected.
+    const more = play(blocked, 45, out);
+    expect(more.loose).toBeCloseTo(0.75, 6);
+    expect(play(more, 70, { spoolSpeed: -0.2, tension: 0.1 }).trip).toBeNull();
+  });
 });
