@@ -167,7 +167,8 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     if (ends !== null) lease = revokeLease(lease, ends);
     const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
-    guard.wrote(confirmed ? judged.drive : null);
+    const missed = guard.wrote(judged.drive, outcome);
+    if (missed !== null) disarm(missed);
     bench.note(readings, estimate.frame, turnOf(estimate), judged.tipSpeed, now);
     notes.motion(estimate.frame, judged.tipSpeed, now);
     notes.refusal(judged, verdict, lease, estimate.frame?.length ?? null);

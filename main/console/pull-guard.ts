@@ -11,6 +11,7 @@ import {
   type WatchedTick,
 } from '../../shared-model/retraction/pull-watch.ts';
 import type { Estimate } from '../../shared-model/shape/estimate.ts';
+import type { WriteOutcome } from '../rig/rig-link.ts';
 import type { RigDescription } from '../rig/signal.ts';
 
 /** The watch over what is under way, and what ends a press. */
@@ -20,8 +21,8 @@ export interface PullGuard {
   step(readings: Readings, estimate: Estimate, gripped: boolean, now: number): GuardStep;
   /** Why a refusal ends the press of a motion under way; null where it does not. */
   endsPress(judged: Judgement): string | null;
-  /** What the rig has confirmed; null where it was told nothing. */
-  wrote(drive: PermittedDrive | null): void;
+  /** What was written and what became of it (null: no line); why the press is over, if it is. */
+  wrote(drive: PermittedDrive, outcome: WriteOutcome | null): string | null;
   /** A fresh press begins. */
   rearm(): void;
   /** The readings begin anew; a suspected fold stays. */
@@ -50,6 +51,7 @@ const TRIPS: ReadonlySet<string> = new Set([
 export const createPullGuard = (rig: RigDescription): PullGuard => {
   let watch = WATCHING;
   let driven: PermittedDrive | null = null;
+  let missed = 0;
   let grippedBefore = false;
   return {
     watch: () => watch,
@@ -67,12 +69,17 @@ export const createPullGuard = (rig: RigDescription): PullGuard => {
       };
     },
     endsPress: ({ refusal }) => {
-      const { spoolSpeed = 0, retractorSpeed = 0 } = driven?.setpoints ?? {};
-      if (spoolSpeed === 0 && (retractorSpeed ?? 0) === 0) return null;
+      if (driven === null || !isMoving(driven)) return null;
       return refusal?.reasons.find((reason) => TRIPS.has(reason.code))?.text ?? null;
     },
-    wrote: (drive) => {
-      driven = drive;
+    wrote: (drive, outcome) => {
+      driven = outcome?.outcome === 'confirmed' ? drive : null;
+      missed = outcome?.outcome === 'failed' && isMoving(drive) ? missed + 1 : 0;
+      // One drive may have taken its setpoint and the other not; together they may not miss one.
+      const most = (drive.setpoints.retractorSpeed ?? 0) === 0 ? MISSED_MAX : 0;
+      return outcome?.outcome === 'failed' && missed > most
+        ? `The rig did not take the setpoints (${outcome.text}).`
+        : null;
     },
     rearm: () => {
       watch = rearmWatch(watch);
@@ -87,6 +94,12 @@ export const createPullGuard = (rig: RigDescription): PullGuard => {
     },
   };
 };
+
+const isMoving = ({ setpoints }: PermittedDrive): boolean =>
+  setpoints.spoolSpeed !== 0 || (setpoints.retractorSpeed ?? 0) !== 0;
+
+/** Setpoints in a row that the spool alone may miss: the base's own watchdog is longer. */
+const MISSED_MAX = 2;
 
 /** Bodies shorter than this, or than they are wide, do not fold [m]. */
 const SHORT = 0.15;

@@ -102,9 +102,12 @@ export const createRigLink = (rig: RigDescription, openLine: OpenLine, clock: Cl
     if (here === null || status.state !== 'open') return failed(`no link to ${port}`);
     beat = (beat + 1) & 0x7fff;
     const values = [...setpointValues(rig, drive.setpoints), ...heartbeats(rig.slaves, beat)];
-    const replies = await Promise.all(planWrites(values).map((question) => here.master.ask(question)));
-    const bad = replies.find((reply) => reply.outcome !== 'answer');
-    return bad === undefined ? { outcome: 'confirmed' } : failed(describe(bad));
+    const questions = planWrites(values);
+    const replies = await Promise.all(questions.map((question) => here.master.ask(question)));
+    const bad = replies.findIndex((reply) => reply.outcome !== 'answer');
+    return bad < 0
+      ? { outcome: 'confirmed' }
+      : failed(`unit ${questions[bad]!.slave}: ${describe(replies[bad]!)}`);
   };
 
   const stop = async (drive: PermittedDrive): Promise<void> => {

@@ -242,6 +242,23 @@ describe('the console, driving the built-in rig in virtual time', () => {
     await bench.close();
   });
 
+  test('ends a pull by the retractor at the first setpoint that the rig does not take', async () => {
+    const bench = await startBench();
+    await grownTo(bench, 6);
+    await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
+    await bench.run(3);
+    const pulled = bench.hold(RETRACT, () => false, 3);
+    await bench.run(1.5);
+    bench.rig.fault('dead-unit');
+    const at = bench.clock.now();
+    await pulled;
+    expect(moving(bench, 0, at).length).toBeGreaterThan(5);
+    // Reading and writing each wait for an answer once; then nothing but zeros is sent.
+    expect(moving(bench, at + 0.2)).toEqual([]);
+    expect(bench.rig.truth().folded).toBe(0);
+    await bench.close();
+  });
+
   test.each([1, 2, 3, 4, 5])(
     'comes from 14 m to the base by the retractor without a loop and without pulling on the grip (machine %i)',
     async (seed) => {
