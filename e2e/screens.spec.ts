@@ -37,6 +37,14 @@ test('Stop and every reading stay on screen on every tab, in both themes and siz
   await operator.growTo(4);
   await operator.button('Log waypoint').click();
   await expect(operator.alert()).toContainText('Waypoint 1 logged');
+  // Stop and the readings stay in reach under every dialog, for pointer and screen reader alike.
+  for (const name of ['Mark branch point', 'Keys and cautions', /^Alarms/]) {
+    await page.getByRole('button', { name }).click();
+    await expect(page.getByRole('dialog')).toBeVisible();
+    await expect(operator.status('Tail tension')).toBeInViewport({ ratio: 1 });
+    await operator.button('Stop').click();
+    await expect(page.getByRole('dialog')).toBeHidden();
+  }
   // A remedy chosen shows its outlook beside the present one.
   const remedy = page.getByRole('group', { name: 'What would help' }).getByRole('button').nth(1);
   await remedy.click();

@@ -99,7 +99,13 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   let estimate = createEstimate();
   let ramps = NO_RAMPS;
   let retractor = createTipRetractor(rig.reads.tip_retractor_attached !== undefined);
-  let around: Surroundings = { estimate, readings: {}, retractorAttached: false, now: Number.NaN };
+  let around: Surroundings = {
+    estimate,
+    readings: {},
+    retractorAttached: false,
+    foldSuspected: null,
+    now: Number.NaN,
+  };
   let board = EMPTY_BOARD;
   let readings: Readings = {};
   let confirmed = false;
@@ -150,7 +156,13 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     estimate = stepEstimate(estimate, readings, attached, { ...rig, gravity: rig.place.gravity }, now);
     followShape(judge, estimate);
     noteTrips(attached, now);
-    around = { estimate, readings, retractorAttached: attached, now };
+    around = {
+      estimate,
+      readings,
+      retractorAttached: attached,
+      foldSuspected: guard.watch().foldSuspected,
+      now,
+    };
     const wayBack = judgeTo(judge, rig, around, 0);
     const stepped = stepBacktracking(
       backtracking,

@@ -9,6 +9,7 @@ import {
   judgeWayBack,
 } from '../../shared-model/retraction/judge.ts';
 import { outlookLine } from '../../shared-model/retraction/outlook-line.ts';
+import type { Trip } from '../../shared-model/retraction/pull-watch.ts';
 import { findRemedies, remedied } from '../../shared-model/retraction/remedies.ts';
 import { judgeStanding, type Standing } from '../../shared-model/retraction/standing.ts';
 import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
@@ -51,6 +52,8 @@ export interface Surroundings {
   readonly estimate: Estimate;
   readonly readings: Readings;
   readonly retractorAttached: boolean;
+  /** While a fold is suspected the shape is not to be relied on. */
+  readonly foldSuspected: Trip | null;
   readonly now: number;
 }
 
@@ -62,7 +65,12 @@ export const judgeTo = (
   target: number,
 ): WayBack => {
   const input = inputOf(judge, rig, around, target);
-  const verdict = judgeWayBack(input, judge.space);
+  const judged = judgeWayBack(input, judge.space);
+  const { foldSuspected } = around;
+  const verdict: WayBack =
+    foldSuspected === null
+      ? judged
+      : { kind: 'cannot-judge', reasons: [foldSuspected], text: foldSuspected.text };
   if (verdict.kind !== 'would-buckle') {
     if (target === 0) judge.remedies = [];
     return verdict;

@@ -1,7 +1,6 @@
-import { Dialog } from 'radix-ui';
 import type { Alarm, ConsoleFrame } from '../../shared-model/contract/frame.ts';
 import { consoleApi } from '../connection/console-api.ts';
-import { hand } from '../drive/use-hand.ts';
+import { CloseDialog, ConsoleDialog } from '../parts/console-dialog.tsx';
 import { clearNotice, report, useNotice } from '../parts/notice.ts';
 import { useConsole } from '../store/console-store.ts';
 
@@ -66,38 +65,27 @@ const AlarmList = () => {
   const acknowledge = async (id: string): Promise<void> =>
     report(await consoleApi.request({ kind: 'acknowledge-alarm', alarm: id }), 'Acknowledged.');
   return (
-    <Dialog.Root onOpenChange={(open) => open && hand.letGo()}>
-      <Dialog.Trigger asChild>
-        <button type="button">Alarms ({alarms.length})</button>
-      </Dialog.Trigger>
-      <Dialog.Portal>
-        <Dialog.Overlay className="overlay" />
-        <Dialog.Content className="dialog" aria-describedby={undefined}>
-          <Dialog.Title>Alarms</Dialog.Title>
-          {alarms.length === 0 ? <p>There are none.</p> : null}
-          {alarms.map((alarm) => (
-            <section key={alarm.id} className="panel">
-              <h3>
-                {SHAPES[alarm.priority]} {alarm.cause}
-              </h3>
-              <p>Consequence: {alarm.consequence}</p>
-              <p>Action: {alarm.action}</p>
-              <p>
-                Priority {alarm.priority}, {alarm.state}.
-              </p>
-              {alarm.state === 'acknowledged' ? null : (
-                <button type="button" onClick={() => void acknowledge(alarm.id)}>
-                  Acknowledge
-                </button>
-              )}
-            </section>
-          ))}
-          <Dialog.Close asChild>
-            <button type="button">Close</button>
-          </Dialog.Close>
-        </Dialog.Content>
-      </Dialog.Portal>
-    </Dialog.Root>
+    <ConsoleDialog title="Alarms" trigger={<button type="button">Alarms ({alarms.length})</button>}>
+      {alarms.length === 0 ? <p>There are none.</p> : null}
+      {alarms.map((alarm) => (
+        <section key={alarm.id} className="panel">
+          <h3>
+            {SHAPES[alarm.priority]} {alarm.cause}
+          </h3>
+          <p>Consequence: {alarm.consequence}</p>
+          <p>Action: {alarm.action}</p>
+          <p>
+            Priority {alarm.priority}, {alarm.state}.
+          </p>
+          {alarm.state === 'acknowledged' ? null : (
+            <button type="button" onClick={() => void acknowledge(alarm.id)}>
+              Acknowledge
+            </button>
+          )}
+        </section>
+      ))}
+      <CloseDialog>Close</CloseDialog>
+    </ConsoleDialog>
   );
 };
 const NONE: never[] = [];

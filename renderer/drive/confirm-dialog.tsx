@@ -1,4 +1,4 @@
-import { Dialog } from 'radix-ui';
+import { CloseDialog, ConsoleDialog } from '../parts/console-dialog.tsx';
 
 /** A second step for what must not happen by one press. Never used for Stop. */
 export const ConfirmDialog = (props: {
@@ -9,26 +9,22 @@ export const ConfirmDialog = (props: {
   readonly onConfirm: () => void;
   readonly onClose: () => void;
 }) => (
-  <Dialog.Root open={props.open} onOpenChange={(open) => (open ? undefined : props.onClose())}>
-    <Dialog.Portal>
-      <Dialog.Overlay className="overlay" />
-      <Dialog.Content className="dialog">
-        <Dialog.Title>{props.title}</Dialog.Title>
-        <Dialog.Description>{props.text}</Dialog.Description>
-        <button
-          type="button"
-          className="go"
-          onClick={() => {
-            props.onConfirm();
-            props.onClose();
-          }}
-        >
-          {props.confirm}
-        </button>
-        <Dialog.Close asChild>
-          <button type="button">Not yet</button>
-        </Dialog.Close>
-      </Dialog.Content>
-    </Dialog.Portal>
-  </Dialog.Root>
+  <ConsoleDialog
+    title={props.title}
+    description={props.text}
+    open={props.open}
+    onOpenChange={(open) => (open ? undefined : props.onClose())}
+  >
+    <button
+      type="button"
+      className="go"
+      onClick={() => {
+        props.onClose();
+        props.onConfirm();
+      }}
+    >
+      {props.confirm}
+    </button>
+    <CloseDialog>Not yet</CloseDialog>
+  </ConsoleDialog>
 );

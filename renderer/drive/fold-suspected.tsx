@@ -6,10 +6,9 @@ import { ConfirmDialog } from './confirm-dialog.tsx';
 
 /** After a suspected fold: what is safe, and the way out once a person has looked. */
 export const FoldSuspected = () => {
-  const text = useConsole(({ frame }) => frame?.foldSuspected?.text ?? '');
   const remedy = useConsole(({ frame }) => frame?.foldSuspected?.remedy ?? '');
   const [asking, setAsking] = useState(false);
-  if (text === '') return null;
+  if (remedy === '') return null;
   const clear = async (): Promise<void> =>
     report(
       await consoleApi.request({ kind: 'clear-fold', confirmed: true }),
@@ -18,7 +17,7 @@ export const FoldSuspected = () => {
   return (
     <div className="fold-suspected">
       <p>
-        <strong>■ Fold suspected.</strong> {text} <strong>{remedy}</strong>
+        <strong>■ Fold suspected.</strong> {remedy}
       </p>
       <button type="button" onClick={() => setAsking(true)}>
         It lies as before…

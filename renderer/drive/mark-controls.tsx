@@ -1,13 +1,12 @@
-import { Dialog } from 'radix-ui';
 import { useMemo, useState } from 'react';
 import { branchPointHere, targetsOnBody } from '../../shared-model/mission/selectors.ts';
 import { consoleApi } from '../connection/console-api.ts';
+import { CloseDialog, ConsoleDialog } from '../parts/console-dialog.tsx';
 import { metres } from '../parts/format.ts';
 import { HoldButton } from '../parts/hold-button.tsx';
 import { report } from '../parts/notice.ts';
 import { useConsole } from '../store/console-store.ts';
 import { stillPicture } from './still-picture.ts';
-import { hand } from './use-hand.ts';
 
 /** Branch points, waypoints, and the way back to them. */
 export const MarkControls = () => (
@@ -32,40 +31,30 @@ const MarkBranchPoint = () => {
     );
     setLabel('');
   };
-  const change = (now: boolean): void => {
-    if (now) hand.letGo();
-    setOpen(now);
-  };
   return (
-    <Dialog.Root open={open} onOpenChange={change}>
-      <Dialog.Trigger asChild>
-        <button type="button">Mark branch point</button>
-      </Dialog.Trigger>
-      <Dialog.Portal>
-        <Dialog.Overlay className="overlay" />
-        <Dialog.Content className="dialog" aria-describedby={undefined}>
-          <Dialog.Title>Branch point here</Dialog.Title>
-          <label>
-            Name (may stay empty)
-            <input value={label} maxLength={60} onChange={(event) => setLabel(event.target.value)} />
-          </label>
-          <div className="row segment">
-            <span>Arm to take first:</span>
-            {(['left', 'right'] as const).map((arm) => (
-              <button key={arm} type="button" aria-pressed={next === arm} onClick={() => setNext(arm)}>
-                {arm === 'left' ? 'Left arm' : 'Right arm'}
-              </button>
-            ))}
-          </div>
-          <button type="button" className="go" onClick={() => void mark()}>
-            Mark it
+    <ConsoleDialog
+      title="Branch point here"
+      trigger={<button type="button">Mark branch point</button>}
+      open={open}
+      onOpenChange={setOpen}
+    >
+      <label>
+        Name (may stay empty)
+        <input value={label} maxLength={60} onChange={(event) => setLabel(event.target.value)} />
+      </label>
+      <div className="row segment">
+        <span>Arm to take first:</span>
+        {(['left', 'right'] as const).map((arm) => (
+          <button key={arm} type="button" aria-pressed={next === arm} onClick={() => setNext(arm)}>
+            {arm === 'left' ? 'Left arm' : 'Right arm'}
           </button>
-          <Dialog.Close asChild>
-            <button type="button">Not here</button>
-          </Dialog.Close>
-        </Dialog.Content>
-      </Dialog.Portal>
-    </Dialog.Root>
+        ))}
+      </div>
+      <button type="button" className="go" onClick={() => void mark()}>
+        Mark it
+      </button>
+      <CloseDialog>Not here</CloseDialog>
+    </ConsoleDialog>
   );
 };
 

@@ -37,7 +37,7 @@ export const VerdictPanel = () => {
 
 /** What to do about what is missing, where nothing can be judged. */
 const Missing = () => {
-  const help = useConsole(({ frame }) => missingOf(frame?.wayBack));
+  const help = useConsole(({ frame }) => (frame?.foldSuspected == null ? missingOf(frame?.wayBack) : ''));
   return help === '' ? null : <p className="trace">{help}</p>;
 };
 

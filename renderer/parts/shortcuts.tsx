@@ -1,5 +1,4 @@
-import { Dialog } from 'radix-ui';
-import { hand } from '../drive/use-hand.ts';
+import { CloseDialog, ConsoleDialog } from './console-dialog.tsx';
 
 const KEYS = [
   ['G (held)', 'Grow'],
@@ -11,33 +10,27 @@ const KEYS = [
 ] as const;
 
 export const Shortcuts = () => (
-  <Dialog.Root onOpenChange={(open) => open && hand.letGo()}>
-    <Dialog.Trigger asChild>
+  <ConsoleDialog
+    title="Keys and cautions"
+    trigger={
       <button type="button" aria-label="Keys and cautions">
         ?
       </button>
-    </Dialog.Trigger>
-    <Dialog.Portal>
-      <Dialog.Overlay className="overlay" />
-      <Dialog.Content className="dialog" aria-describedby={undefined}>
-        <Dialog.Title>Keys and cautions</Dialog.Title>
-        <table>
-          <tbody>
-            {KEYS.map(([key, what]) => (
-              <tr key={key}>
-                <th scope="row">{key}</th>
-                <td>{what}</td>
-              </tr>
-            ))}
-          </tbody>
-        </table>
-        <Cautions />
-        <Dialog.Close asChild>
-          <button type="button">Close</button>
-        </Dialog.Close>
-      </Dialog.Content>
-    </Dialog.Portal>
-  </Dialog.Root>
+    }
+  >
+    <table>
+      <tbody>
+        {KEYS.map(([key, what]) => (
+          <tr key={key}>
+            <th scope="row">{key}</th>
+            <td>{what}</td>
+          </tr>
+        ))}
+      </tbody>
+    </table>
+    <Cautions />
+    <CloseDialog>Close</CloseDialog>
+  </ConsoleDialog>
 );
 
 export const Cautions = () => (

@@ -89,7 +89,7 @@ const growingTick = (length: number): Figure => {
     };
     estimate = stepEstimate(estimate, readings, false, { ...rig, gravity: rig.place.gravity }, now);
     followShape(judge, estimate);
-    judgeTo(judge, rig, { estimate, readings, retractorAttached: false, now }, 0);
+    judgeTo(judge, rig, { estimate, readings, retractorAttached: false, foldSuspected: null, now }, 0);
     growthPressureOf(estimate, rig);
   };
   let grown = 0;

@@ -189,6 +189,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
     expect(bench.rig.truth().folded).toBeGreaterThan(0);
     expect(bench.rig.truth().folded).toBeLessThan(0.15);
     expect(bench.frame().foldSuspected?.code).toBe('suspected-fold');
+    expect(bench.frame().wayBack.kind).toBe('cannot-judge');
     expect(bench.frame().alarms.map((alarm) => alarm.id)).toContain('fold-suspected');
     const folded = bench.rig.truth().folded;
     await bench.hold(RETRACT, () => false, 3);
