@@ -9,6 +9,7 @@ import { outlookForRig, runOutlook } from './commands/outlook.ts';
 import { simulate } from './commands/simulate.ts';
 import { onParentGone } from './parent-watch.ts';
 import { BUILT_IN_RIG_FILE, loadRigFile } from './rig/rig-file.ts';
+import { withTrials } from './rig/trials.ts';
 import { FAULTS, type Fault } from './simulator/built-in-rig.ts';
 
 // `foldback check-rig | head` has read enough: that is no error.
@@ -82,7 +83,9 @@ A result's ratio is null where nothing pulls or no body is out. verdict: invert,
       const loaded = loadRigFile(options.rig === 'built-in' ? BUILT_IN_RIG_FILE : options.rig);
       if (!loaded.ok) return failWith(loaded.errors);
       if (options.length === undefined) return failWith(['--rig needs --length, the body length in metres.']);
-      const { rig } = loaded;
+      // What was measured on the machine counts for the plan too.
+      const { rig, trouble } = withTrials(loaded.rig, null, new Date().toISOString());
+      if (trouble !== null) output.error(trouble);
       const pressure =
         (options.pressure ?? (rig.limits.bodyPressureMin + rig.limits.bodyPressureMax) / 2000) * 1000;
       const plan = {

@@ -4,6 +4,7 @@ import { createRigLink } from '../rig/link.ts';
 import { BUILT_IN_RIG_FILE, loadRigFile } from '../rig/rig-file.ts';
 import { serialPortOpener } from '../rig/serial-port-line.ts';
 import type { RigDescription, WireSignal } from '../rig/signal.ts';
+import { withTrials } from '../rig/trials.ts';
 
 export interface CheckRigOptions {
   /** Rig file; the built-in rig's when left out. */
@@ -41,9 +42,27 @@ export const checkRig = async (options: CheckRigOptions, output: Output): Promis
       ),
     );
   else printTable(rig, readings, output);
+  if (!reportTrials(rig, options, output)) return 1;
   const bad =
     readings === null ? 0 : Object.values(readings).filter((reading) => reading.quality !== 'good').length;
   return bad === 0 ? 0 : 1;
+};
+
+/** How the trials in the companion stand; whether it can be read. The built-in rig's lies with its missions. */
+const reportTrials = (rig: RigDescription, options: CheckRigOptions, output: Output): boolean => {
+  if (options.file === undefined) return true;
+  const { companion, standings, trouble } = withTrials(rig, null, systemClock.wall().toISOString());
+  if (trouble !== null) {
+    output.error(`${trouble} Nothing counts as measured until it can be read.`);
+    return false;
+  }
+  if (options.json) return true;
+  for (const { kind, state, record } of standings)
+    if (record !== null)
+      output.out(
+        `  trial ${kind.padEnd(24)} ${state} by ${record.initials} on ${record.date}, until ${record.expires} (${companion})`,
+      );
+  return true;
 };
 
 const rows = (rig: RigDescription, readings: Readings | null) => {
