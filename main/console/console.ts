@@ -68,6 +68,8 @@ export interface ConsoleParts {
   /** Built-in rig in this process only. */
   readonly simulateFault: ((name: string) => void) | null;
   readonly send: (client: string, message: ConsoleMessage) => void;
+  /** Told of a fault of the console's own, for the log of the process. */
+  readonly complain: (text: string) => void;
 }
 
 export interface RunningConsole {
@@ -148,7 +150,8 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     const now = clock.now();
     const dt = Math.min(2 * TICK, Math.max(0, now - lastTickAt)) || TICK;
     lastTickAt = now;
-    noteLink(link.status());
+    const linkRead = link.status();
+    noteLink(linkRead);
     lease = expireLease(lease, now);
     const gripState = retractorState(retractor, readings, now, rig.limits.readingAge);
     const attached = gripState === 'attached';
@@ -177,7 +180,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     const judged = decide(stepped.wish, verdict, gripState, dt);
     const ends = guard.endsPress(judged);
     if (ends !== null) lease = revokeLease(lease, ends);
-    const outcome = link.status().state === 'open' ? await link.write(judged.drive, clock.now()) : null;
+    const outcome = sameLink(link.status(), linkRead) ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
     const missed = guard.wrote(judged.drive, outcome);
     if (missed !== null) disarm(missed);
@@ -301,7 +304,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       .catch((error: unknown) => {
         // A bug in a tick must not leave a motor running on its last setpoint.
         disarm('The console met an internal error.');
-        process.stderr.write(`tick failed: ${error instanceof Error ? error.stack : String(error)}\n`);
+        parts.complain(`tick failed: ${error instanceof Error ? error.stack : String(error)}`);
       })
       .then(() => {
         if (running) cancelTick = clock.after(Math.max(0.001, TICK - (clock.now() - began)), loop);
@@ -443,6 +446,10 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     },
   };
 };
+
+/** Open, and not closed in between: no permit outlives the connection it was judged on. */
+const sameLink = (now: LinkStatus, then: LinkStatus): boolean =>
+  now.state === 'open' && then.state === 'open' && now.since === then.since;
 
 /** Total bend of the body as estimated [rad]. */
 const turnOf = ({ path }: Estimate): number => path.bend[path.count - 1] ?? 0;

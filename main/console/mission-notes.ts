@@ -9,7 +9,7 @@ import { duePathEvent } from './path-events.ts';
 
 /** Turns what a tick saw into the mission's events: changes and milestones, not ticks. */
 export interface MissionNotes {
-  /** Whether the link has changed its state. */
+  /** Whether the link has changed its state, or was opened anew between two ticks. */
   link(status: LinkStatus): boolean;
   /** A state that cannot be read is no news. */
   retractor(state: TipRetractorStatus['state'], source: TipRetractorStatus['source']): void;
@@ -24,14 +24,17 @@ const REST = 0.4;
 
 export const createMissionNotes = (append: (event: UnstampedEvent) => void): MissionNotes => {
   let linkBefore: LinkStatus['state'] = 'opening';
+  let openSince = Number.NaN;
   let attachedBefore = false;
   let markedLength = 0;
   let movedAt = Number.NEGATIVE_INFINITY;
   let refusedBefore = '';
   return {
     link: (status) => {
-      if (status.state === linkBefore) return false;
+      const anew = status.state === 'open' && status.since !== openSince;
+      if (status.state === linkBefore && !anew) return false;
       linkBefore = status.state;
+      if (status.state === 'open') openSince = status.since;
       append({ kind: 'link', state: status.state, text: linkText(status) });
       return true;
     },

@@ -63,6 +63,7 @@ export const startConsole = async (
     missionsDir: options.missionsDir,
     simulateFault,
     send,
+    complain: (text) => void process.stderr.write(`${text}\n`),
   });
 };
 

@@ -16,6 +16,14 @@ const REOPEN_AFTER = 1;
 const HEALTH_EVERY = 20;
 
 /** The link to one rig over whatever line `openLine` gives. Opens at once and again after every loss. */
+/** One connection; another one is another object. */
+interface OpenedLine {
+  readonly line: SerialLine;
+  readonly master: Master;
+  /** When it was opened, monotonic [s]. */
+  readonly since: number;
+}
+
 export const createRigLink = (rig: RigDescription, openLine: OpenLine, clock: Clock): RigLink => {
   const plan = planReads(Object.entries(rig.reads) as [ReadSignal, WireSignal][]);
   const last = new Map<ReadSignal, Reading>();
@@ -26,7 +34,7 @@ export const createRigLink = (rig: RigDescription, openLine: OpenLine, clock: Cl
     replyTimeout: rig.serial.replyTimeout,
   };
   let status: LinkStatus = { state: 'opening', port };
-  let open: { line: SerialLine; master: Master; since: number } | null = null;
+  let open: OpenedLine | null = null;
   let cancelReopen: () => void = () => {};
   let closed = false;
   let beat = 0;
@@ -47,18 +55,25 @@ export const createRigLink = (rig: RigDescription, openLine: OpenLine, clock: Cl
 
   const tryOpen = async (): Promise<void> => {
     if (closed || open !== null) return;
+    let mine: OpenedLine | null = null;
     try {
       const line = await openLine();
       if (closed) return void line.close();
       const master = createMaster(line, timing, clock);
-      open = { line, master, since: clock.now() };
+      const here = { line, master, since: clock.now() };
+      open = here;
+      mine = here;
       line.onLost(lose);
       await checkIdentities(rig.slaves, master);
+      // It may have been lost again meanwhile.
+      if (open !== here) return;
       // Nothing read before a loss may pass for a present reading after it.
       last.clear();
       reads = 0;
-      status = { state: 'open', port, cycleRate: 0, errors: 0 };
+      status = { state: 'open', port, cycleRate: 0, errors: 0, since: here.since };
     } catch (error) {
+      // Lost meanwhile, and perhaps opened anew by someone else: that is not this try's to end.
+      if (open !== mine) return;
       lose(
         error instanceof LineError
           ? error
@@ -91,7 +106,14 @@ export const createRigLink = (rig: RigDescription, openLine: OpenLine, clock: Cl
     const counts = here.master.counts();
     const heard = Math.max(counts.lastFrameAt, here.since);
     if (clock.now() - heard > rig.serial.linkTimeout) lose(silent(port, rig.serial.linkTimeout));
-    else status = { state: 'open', port, cycleRate: Math.round(rate * 10) / 10, errors: counts.errors };
+    else
+      status = {
+        state: 'open',
+        port,
+        cycleRate: Math.round(rate * 10) / 10,
+        errors: counts.errors,
+        since: here.since,
+      };
   };
 
   const write = async (drive: PermittedDrive, now: number): Promise<WriteOutcome> => {

@@ -36,7 +36,7 @@ const holdText = (hold: Standing['hold'], margin: number): string => {
   if (hold.ratio >= margin) return held;
   const eased =
     hold.easedPressure === null ? 'no pressure eases it' : `ease to ${kilopascals(hold.easedPressure)}`;
-  return `▲ ${held}, folds at ${newtons(hold.capacity)}: ${eased}`;
+  return `▲ ${held}; a free body folds at ${newtons(hold.capacity)}: ${eased}`;
 };
 
 const growthText = ({ needed, reserve, stallLength }: Standing['growth']): string =>

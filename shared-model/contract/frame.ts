@@ -12,7 +12,14 @@ import type { Wish } from './request.ts';
 /** The state of the line to the rig. `text` and `remedy` speak to a person. */
 export type LinkStatus =
   | { readonly state: 'opening'; readonly port: string }
-  | { readonly state: 'open'; readonly port: string; readonly cycleRate: number; readonly errors: number }
+  | {
+      readonly state: 'open';
+      readonly port: string;
+      readonly cycleRate: number;
+      readonly errors: number;
+      /** When it was opened, monotonic [s]; another time is another connection. */
+      readonly since: number;
+    }
   | {
       readonly state: 'lost';
       readonly port: string;

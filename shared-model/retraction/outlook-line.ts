@@ -7,6 +7,8 @@ const POINTS = 160;
 
 /** A judgement as a chart, thinned: at each length the end of the pressure band that the verdict rests on. */
 export const outlookLine = (shape: SampledShape, { low, high }: JudgeSpace, margin: number): OutlookLine => {
+  // A judgement of another body, as after a reconnection, is none of this one.
+  if (low.count !== shape.count) return { length: [], invert: [], buckle: [], margin };
   const stride = Math.max(1, Math.ceil(low.count / POINTS));
   const stations = Array.from({ length: low.count }, (_, i) => i).filter(
     (i) => i > 0 && (i % stride === 0 || i === low.count - 1),

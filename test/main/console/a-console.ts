@@ -29,6 +29,8 @@ export interface Bench {
   /** Every motion write that passed between master and slave. */
   readonly wire: readonly WireSpeed[];
   readonly events: readonly MissionEvent[];
+  /** Faults of the console's own; a sound one has none. */
+  readonly complaints: readonly string[];
   frame(client?: string): ConsoleFrame;
   hello(client: string): ConsoleHello;
   run(seconds: number): Promise<void>;
@@ -39,13 +41,23 @@ export interface Bench {
 }
 
 /** The whole console on the built-in rig, in virtual time, with a recorder between master and slave. */
-export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promise<Bench> => {
+export const startBench = async (
+  seed = 5,
+  {
+    companionFolder = '/nowhere',
+    wrap = (line) => line,
+  }: {
+    readonly companionFolder?: string;
+    /** What stands between the recorder and the machine: a bad line. */
+    readonly wrap?: (line: SerialLine, clock: VirtualClock) => SerialLine;
+  } = {},
+): Promise<Bench> => {
   const clock = createVirtualClock();
   const description = builtInRig();
   const rig = createBuiltInRig(description, { seed, clock });
   const wire: WireSpeed[] = [];
   const openLine = async (): Promise<SerialLine> => {
-    const line = await rig.openLine();
+    const line = wrap(await rig.openLine(), clock);
     return {
       ...line,
       write: (bytes) => {
@@ -55,6 +67,7 @@ export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promis
     };
   };
   const events: MissionEvent[] = [];
+  const complaints: string[] = [];
   const inbox = new Map<string, { frame?: ConsoleFrame; hello?: ConsoleHello }>();
   const send = (client: string, message: ConsoleMessage): void => {
     const box = inbox.get(client) ?? {};
@@ -78,6 +91,7 @@ export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promis
     missionsDir: '/nowhere',
     simulateFault: (name) => rig.fault(name as Parameters<typeof rig.fault>[0]),
     send,
+    complain: (text) => void complaints.push(text),
   });
   console_.join('driver');
   let press = 0;
@@ -87,6 +101,7 @@ export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promis
     rig,
     wire,
     events,
+    complaints,
     frame: (client = 'driver') => inbox.get(client)?.frame as ConsoleFrame,
     hello: (client) => inbox.get(client)?.hello as ConsoleHello,
     run: (seconds) => clock.advanceTo(clock.now() + seconds),
@@ -97,6 +112,7 @@ export const startBench = async (seed = 5, companionFolder = '/nowhere'): Promis
       });
       while (!closed) await bench.run(0.05);
       await closing;
+      if (complaints.length > 0) throw new Error(complaints.join('\n'));
     },
     hold: async (wish, until, most = 90) => {
       press++;

@@ -69,7 +69,7 @@ describe('the bench of the console', () => {
 
   test('keeps a trial that it fitted itself, tells the record, and puts it in force at the next start', async () => {
     const dir = folder();
-    const bench = await startBench(5, dir);
+    const bench = await startBench(5, { companionFolder: dir });
     expect(await save(bench)).toMatchObject({ ok: true });
     expect(bench.events.find((event) => event.kind === 'trial-saved')).toMatchObject({ initials: 'ab' });
     const list = await bench.console_.request('driver', { kind: 'bench-list' });
@@ -84,7 +84,7 @@ describe('the bench of the console', () => {
 
   test('keeps none that has too few points, no initials, or would have expired', async () => {
     const dir = folder();
-    const bench = await startBench(5, dir);
+    const bench = await startBench(5, { companionFolder: dir });
     for (const [over, code] of [
       [{ trial: { ...trial, points: trial.points.slice(0, 2) } }, 'no-fit'],
       [{ initials: '   ' }, 'bad-request'],
