@@ -1,26 +1,15 @@
-import { mkdtemp, readdir, rm } from 'node:fs/promises';
-import { tmpdir } from 'node:os';
-import { join } from 'node:path';
+import { readdir } from 'node:fs/promises';
 import { expect, test } from './browser-test.ts';
-import { operatorOf, type Started, startConsole } from './operator.ts';
+import { freshConsole, operatorOf } from './operator.ts';
 
-let missions: string;
-let console_: Started;
-test.beforeEach(async () => {
-  missions = await mkdtemp(join(tmpdir(), 'foldback-bench-'));
-  console_ = await startConsole(missions);
-});
-test.afterEach(async () => {
-  await console_.stop();
-  await rm(missions, { recursive: true, force: true });
-});
+const console_ = freshConsole('bench');
 
 test('a technician measures the tail against a tape, and after the next start it counts as measured', async ({
   page,
 }) => {
   test.setTimeout(240_000);
   const operator = operatorOf(page);
-  await page.goto(console_.line[1]!);
+  await page.goto(console_.address());
   await expect(operator.status('Link')).toContainText('open');
   const trial = page.getByRole('button', { name: /^Tail length against a tape/ });
   for (const metres of [0.5, 1, 1.5, 2]) {
@@ -46,12 +35,11 @@ test('a technician measures the tail against a tape, and after the next start it
   await operator.button('Save trial').click();
   await expect(operator.alert()).toContainText('Trial saved');
   await expect(trial).toContainText('in force from the next start');
-  expect(await readdir(missions)).toContain('built-in.bench.yaml');
+  expect(await readdir(console_.missions())).toContain('built-in.bench.yaml');
 
-  await console_.stop();
-  console_ = await startConsole(missions);
+  await console_.restart();
   await page.goto('about:blank');
-  await page.goto(console_.line[1]!);
+  await page.goto(console_.address());
   await operator.openTab('Bench');
   await expect(trial).toContainText('measured, qx');
   await expect(page.getByText(/scale of the payout 1\.0/)).toBeVisible();

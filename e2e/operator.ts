@@ -1,8 +1,10 @@
 import { type ChildProcess, spawn } from 'node:child_process';
+import { mkdtemp, rm } from 'node:fs/promises';
+import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import type { Locator, Page } from 'playwright';
 import { ended } from '../test/peers/socat.ts';
-import { expect } from './browser-test.ts';
+import { expect, test } from './browser-test.ts';
 
 const PROJECT = join(import.meta.dirname, '..');
 
@@ -83,5 +85,28 @@ export const operatorOf = (page: Page) => {
     openTab: (name: string) => page.getByRole('tab', { name }).click(),
     alert: () => page.getByRole('alert'),
     expectWayBack: (words: string) => expect(status('Way back')).toContainText(words),
+  };
+};
+
+/** A console with a missions folder of its own for every test of a file. */
+export const freshConsole = (name: string) => {
+  let missions = '';
+  let started: Started | null = null;
+  test.beforeEach(async () => {
+    missions = await mkdtemp(join(tmpdir(), `foldback-${name}-`));
+    started = await startConsole(missions);
+  });
+  test.afterEach(async () => {
+    await started?.stop();
+    await rm(missions, { recursive: true, force: true });
+  });
+  return {
+    missions: () => missions,
+    address: () => started?.line[1] ?? '',
+    /** Stops the console and starts it again on the same missions. */
+    restart: async (): Promise<void> => {
+      await started?.stop();
+      started = await startConsole(missions);
+    },
   };
 };

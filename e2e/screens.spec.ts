@@ -1,8 +1,6 @@
-import { mkdtemp, rm } from 'node:fs/promises';
-import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { expect, test } from './browser-test.ts';
-import { operatorOf, type Started, startConsole } from './operator.ts';
+import { freshConsole, operatorOf } from './operator.ts';
 
 // Pictures of every tab in both themes and two sizes, to be looked at, and what a look can be held to.
 
@@ -12,23 +10,14 @@ const SIZES = [
   { width: 1920, height: 1080 },
 ] as const;
 
-let missions: string;
-let console_: Started;
-test.beforeEach(async () => {
-  missions = await mkdtemp(join(tmpdir(), 'foldback-screens-'));
-  console_ = await startConsole(missions);
-});
-test.afterEach(async () => {
-  await console_.stop();
-  await rm(missions, { recursive: true, force: true });
-});
+const console_ = freshConsole('screens');
 
 test('Stop and every reading stay on screen on every tab, in both themes and sizes, and Drive never scrolls', async ({
   page,
 }) => {
   test.setTimeout(240_000);
   const operator = operatorOf(page);
-  await page.goto(console_.line[1]!);
+  await page.goto(console_.address());
   await expect(operator.status('Link')).toContainText('open');
   await operator.growTo(3.4);
   await operator.button('Mark branch point').click();

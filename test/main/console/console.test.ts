@@ -7,6 +7,11 @@ const GROW = { motion: { kind: 'grow' } } as const;
 const RETRACT = { motion: { kind: 'retract' } } as const;
 const length = (bench: Bench): number => bench.frame().estimate?.length ?? Number.NaN;
 const grownTo = (bench: Bench, metres: number) => bench.hold(GROW, () => length(bench) >= metres);
+/** Engages the tip retractor and waits until it grips. */
+const engage = async (bench: Bench): Promise<void> => {
+  await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
+  await bench.run(3);
+};
 const kinds = (bench: Bench): string[] => bench.events.map((event) => event.kind);
 const moving = (bench: Bench, from: number, to = Number.POSITIVE_INFINITY) =>
   bench.wire.filter(({ at, spool, retractor }) => at > from && at <= to && (spool !== 0 || retractor !== 0));
@@ -63,8 +68,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
       );
       await grownTo(bench, 12);
       expect(bench.rig.truth().tip[0]).toBeLessThan(-0.8);
-      await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
-      await bench.run(3);
+      await engage(bench);
       expect(bench.frame().wayBack.kind).toBe('by-tip-retractor');
       const target = bench.events.find((event) => event.kind === 'branch-point-marked')?.id ?? '';
       await bench.hold(
@@ -167,8 +171,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
   test('holds still when the retractor loses its grip on the way back', async () => {
     const bench = await startBench();
     await grownTo(bench, 6);
-    await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
-    await bench.run(3);
+    await engage(bench);
     const pulled = bench.hold(RETRACT, () => false, 4);
     await bench.run(1.5);
     bench.rig.fault('retractor-loss');
@@ -232,8 +235,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
   test('ends a pull whose retractor motor stalls, both drives at once, and says which it is', async () => {
     const bench = await startBench();
     await grownTo(bench, 6);
-    await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
-    await bench.run(3);
+    await engage(bench);
     bench.rig.fault('retractor-stall');
     const at = bench.clock.now();
     await bench.hold(RETRACT, () => false, 4);
@@ -246,8 +248,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
   test('ends a pull by the retractor at the first setpoint that the rig does not take', async () => {
     const bench = await startBench();
     await grownTo(bench, 6);
-    await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
-    await bench.run(3);
+    await engage(bench);
     const pulled = bench.hold(RETRACT, () => false, 3);
     await bench.run(1.5);
     bench.rig.fault('dead-unit');
@@ -265,8 +266,7 @@ describe('the console, driving the built-in rig in virtual time', () => {
     async (seed) => {
       const bench = await startBench(seed);
       await grownTo(bench, 14);
-      await bench.console_.request('driver', { kind: 'set-tip-retractor', attached: true, confirmed: true });
-      await bench.run(3);
+      await engage(bench);
       let loose = 0;
       let tension = 0;
       await bench.hold(
