@@ -39,6 +39,9 @@ export const withTrials = (rig: RigDescription, folder: string | null, now: stri
             ...tail_payout,
             scale: tail_payout.scale * payout.scale,
             offset: tail_payout.offset * payout.scale + payout.offset,
+            // The range is the encoder's own: corrected alike, so that it still ends at the same counts.
+            min: tail_payout.min * payout.scale + payout.offset,
+            max: tail_payout.max * payout.scale + payout.offset,
           },
         };
   return {

@@ -3,12 +3,11 @@ import { amplifiedLength, capstan, inversionTension } from '../mechanics/inversi
 import { area } from '../mechanics/section.ts';
 import { bandOf, leastSquares } from './least-squares.ts';
 import { along } from './tail-length.ts';
-import type { PointsOf, TrialFit } from './trial.ts';
+import { inRange, type PointsOf, type TrialFit, VALUE_RANGES } from './trial.ts';
 
 const LEAST_POINTS = 5;
 /** Friction shows only where the tail is turned: at least this much apart [rad]. */
 const LEAST_TURN = 0.7;
-const FRICTION_MAX = 1.5;
 
 /**
  * Y_r and μ from the tension at the base while the tip turns slowly: T = (A/2)(P + Y_r)·e^{μΘ} + the drag of the tail's own
@@ -42,10 +41,15 @@ export const fitInversion = (points: PointsOf<'inversion'>, body: BodyDescriptio
       ok: false,
       why: `The yield comes to ${(Y / 1000).toFixed(2)} kPa, below zero. Check the load cell’s zero.`,
     };
-  if (!(mu >= 0 && mu <= FRICTION_MAX))
+  if (!inRange('inversionYield', Y))
     return {
       ok: false,
-      why: `The friction comes to ${mu.toFixed(2)}; allowed is 0 to ${FRICTION_MAX}. Check the bends.`,
+      why: `The yield comes to ${(Y / 1000).toFixed(0)} kPa; up to ${VALUE_RANGES.inversionYield[1] / 1000} kPa is allowed. Check the units of the tension.`,
+    };
+  if (!inRange('friction', mu))
+    return {
+      ok: false,
+      why: `The friction comes to ${mu.toFixed(2)}; allowed is ${VALUE_RANGES.friction.join(' to ')}. Check the bends.`,
     };
   const pressures = points.map((point) => point.pressure);
   const length = points.reduce((sum, point) => sum + point.length, 0) / points.length;

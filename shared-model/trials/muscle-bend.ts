@@ -2,10 +2,9 @@ import type { Muscles } from '../body/body.ts';
 import { bendOfPressures } from '../steering/muscle-bend.ts';
 import { bandOf, leastSquares } from './least-squares.ts';
 import { along } from './tail-length.ts';
-import type { PointsOf, TrialFit } from './trial.ts';
+import { inRange, type PointsOf, type TrialFit, VALUE_RANGES } from './trial.ts';
 
 const LEAST_POINTS = 4;
-const GAINS = [0.05, 2] as const;
 
 /** Gain of the bend: what is measured with one muscle at work, over what its contraction curve alone would give. */
 export const fitMuscleBend = (points: PointsOf<'muscle-bend'>, muscles: Muscles): TrialFit => {
@@ -22,10 +21,10 @@ export const fitMuscleBend = (points: PointsOf<'muscle-bend'>, muscles: Muscles)
       why: 'The pressures do not determine a gain: take them where the muscle bends the body.',
     };
   const [gain] = fit.parameters as [number];
-  if (!(gain >= GAINS[0] && gain <= GAINS[1]))
+  if (!inRange('bendGain', gain))
     return {
       ok: false,
-      why: `The gain comes to ${gain.toFixed(2)}; allowed is ${GAINS.join(' to ')}. Check units and muscle.`,
+      why: `The gain comes to ${gain.toFixed(2)}; allowed is ${VALUE_RANGES.bendGain.join(' to ')}. Check units and muscle.`,
     };
   const most = Math.max(...points.map((point) => point.pressure));
   return {

@@ -1,12 +1,9 @@
 import { bandOf, leastSquares } from './least-squares.ts';
-import type { PointsOf, TrialFit } from './trial.ts';
+import { inRange, type PointsOf, type TrialFit, VALUE_RANGES } from './trial.ts';
 
 /** Points and span of body length that a straight line needs [m]. */
 const LEAST_POINTS = 4;
 const LEAST_SPAN = 1;
-/** A scale further off than this is another spool, an offset another zero. */
-const SCALES = [0.8, 1.25] as const;
-const OFFSET_MAX = 0.5;
 
 /**
  * Scale and zero of the payout: twice the body length by tape is scale × payout as read + offset, while the tail is taut.
@@ -24,15 +21,15 @@ export const fitTailLength = (points: PointsOf<'tail-length'>): TrialFit => {
   if (fit === null)
     return { ok: false, why: 'The lengths do not determine a line: take them at different payouts.' };
   const [scale, offset] = fit.parameters as [number, number];
-  if (!(scale >= SCALES[0] && scale <= SCALES[1]))
+  if (!inRange('payoutScale', scale))
     return {
       ok: false,
-      why: `The scale comes to ${scale.toFixed(3)}; allowed is ${SCALES.join(' to ')}. Check tape and encoder.`,
+      why: `The scale comes to ${scale.toFixed(3)}; allowed is ${VALUE_RANGES.payoutScale.join(' to ')}. Check tape and encoder.`,
     };
-  if (!(Math.abs(offset) <= OFFSET_MAX))
+  if (!inRange('payoutOffset', offset))
     return {
       ok: false,
-      why: `The zero is off by ${offset.toFixed(2)} m of tail; up to ${OFFSET_MAX} m is allowed. Set it at the rig.`,
+      why: `The zero is off by ${offset.toFixed(2)} m of tail; up to ${VALUE_RANGES.payoutOffset[1]} m is allowed. Set it at the rig.`,
     };
   const payouts = points.map((point) => point.payout);
   const [low, high] = [Math.min(...payouts), Math.max(...payouts)];

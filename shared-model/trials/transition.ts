@@ -4,14 +4,12 @@ import { createArms, updateStation } from '../retraction/arms.ts';
 import { capacityAt } from '../retraction/outlook.ts';
 import { sampleSegments } from '../shape/segments.ts';
 import { leastSquares, studentT95 } from './least-squares.ts';
-import type { PointsOf, TrialFit } from './trial.ts';
+import { inRange, type PointsOf, type TrialFit, VALUE_RANGES } from './trial.ts';
 
 type Point = PointsOf<'transition'>[number];
 
 const LEAST_POINTS = 6;
 const LEAST_BENDS = 3;
-/** The margin is never below the smallest that is ever used, and pressure can never satisfy one of 2. */
-const MARGINS = [1.25, 2] as const;
 
 /**
  * η and ε₀ from the tensions at which the body just folded, straight and in bends: the capacity of the verdict equals
@@ -44,13 +42,18 @@ export const fitTransition = (points: PointsOf<'transition'>, body: BodyDescript
       ok: false,
       why: `The body bore ${eta.toFixed(2)} of the full collapse; more than 1 is not possible. Check tension and pressure.`,
     };
-  const t = studentT95(fit.degreesOfFreedom);
-  const lowest = 1 - t * fit.deviation * Math.sqrt(1 + 1 / points.length);
-  const margin = Math.max(MARGINS[0], lowest > 0 ? 1 / lowest : Number.POSITIVE_INFINITY);
-  if (!(margin < MARGINS[1]))
+  if (!inRange('collapseFraction', Math.min(1, eta)) || !inRange('eccentricityFloor', floor))
     return {
       ok: false,
-      why: `The folds scatter by ${(100 * fit.deviation).toFixed(0)} %: no margin below ${MARGINS[1]} is justified. Repeat the trial.`,
+      why: `The body bore ${eta.toFixed(2)} of the full collapse with an arm of ${floor.toFixed(2)} radii; allowed are ${VALUE_RANGES.collapseFraction.join(' to ')} and ${VALUE_RANGES.eccentricityFloor.join(' to ')}. Check tensions and bends.`,
+    };
+  const t = studentT95(fit.degreesOfFreedom);
+  const lowest = 1 - t * fit.deviation * Math.sqrt(1 + 1 / points.length);
+  const margin = Math.max(VALUE_RANGES.margin[0], lowest > 0 ? 1 / lowest : Number.POSITIVE_INFINITY);
+  if (!inRange('margin', margin))
+    return {
+      ok: false,
+      why: `The folds scatter by ${(100 * fit.deviation).toFixed(0)} %: no margin below 2 is justified. Repeat the trial.`,
     };
   const fitted = ratios(eta, floor).map((ratio, i) => ratio * points[i]!.tension);
   const most = Math.max(...fitted, ...points.map((point) => point.tension));
@@ -71,8 +74,8 @@ export const fitTransition = (points: PointsOf<'transition'>, body: BodyDescript
   };
 };
 
-/** Capacity [N] of one trial's body over η and ε₀. */
-const capacityOf = ({ length, bend, pressure }: Point, body: BodyDescription) => {
+/** Capacity [N] of a body in one even bend, over η and ε₀. */
+export const capacityOf = ({ length, bend, pressure }: Omit<Point, 'tension'>, body: BodyDescription) => {
   const shape = sampleSegments([{ length, curvature: bend, plane: 0 }], length / 100);
   const arms = createArms(shape.count, { setback: body.guideSetback, gravity: WEIGHTLESS });
   const tip = shape.count - 1;

@@ -53,6 +53,34 @@ export const TRIAL_VALUES = [
 ] as const;
 export type TrialValue = (typeof TRIAL_VALUES)[number];
 
+/** What a trial of each kind gives: all of it, or it counts for nothing. */
+export const VALUES_OF: Readonly<Record<TrialKind, readonly TrialValue[]>> = {
+  'tail-length': ['payoutScale', 'payoutOffset'],
+  'muscle-bend': ['bendGain'],
+  inversion: ['inversionYield', 'friction'],
+  transition: ['collapseFraction', 'eccentricityFloor', 'margin'],
+};
+
+/** What each value may be, in SI; both ends are allowed. Outside it is a slip of hand or unit (common practice). */
+export const VALUE_RANGES: Readonly<Record<TrialValue, readonly [low: number, high: number]>> = {
+  // A scale further off than this is another spool, an offset another zero.
+  payoutScale: [0.8, 1.25],
+  payoutOffset: [-0.5, 0.5],
+  bendGain: [0.05, 2],
+  inversionYield: [0, 100_000],
+  friction: [0, 1.5],
+  collapseFraction: [0.05, 1],
+  eccentricityFloor: [0, 10],
+  // Never below the smallest that is ever used, and pressure can never satisfy one of 2.
+  margin: [1.25, 1.999],
+};
+
+/** Written so that NaN is outside. */
+export const inRange = (name: TrialValue, value: number): boolean => {
+  const [low, high] = VALUE_RANGES[name];
+  return value >= low && value <= high;
+};
+
 /** Data and fit for a plot; the line with its 95 % band. In the units that people read. */
 export interface TrialPlot {
   readonly x: string;
@@ -78,8 +106,7 @@ export interface TrialMachine {
   readonly limits: Limits;
 }
 
-/** A trial as it is kept, append only: raw points, what was fitted, what was in force before, who and until when. */
-export const trialRecordSchema = z.strictObject({
+const recordShape = z.strictObject({
   trial: trialPointsSchema,
   values: z.array(
     z.strictObject({ name: z.enum(TRIAL_VALUES), value: number, halfWidth: z.number().min(0) }),
@@ -90,4 +117,26 @@ export const trialRecordSchema = z.strictObject({
   initials: z.string().min(1).max(12),
   expires: z.iso.datetime(),
 });
-export type TrialRecord = z.infer<typeof trialRecordSchema>;
+export type TrialRecord = z.infer<typeof recordShape>;
+
+/**
+ * A trial as it is kept, append only: raw points, what was fitted, what was in force before, who and until when. Values that
+ * lack, or that cannot be, are refused: whoever writes them by hand could else make the verdict bolder than any trial may.
+ */
+export const trialRecordSchema = recordShape.superRefine(({ trial, values }, context) => {
+  const wanted = VALUES_OF[trial.kind];
+  const given = values.map(({ name }) => name);
+  if (given.length !== wanted.length || !wanted.every((name) => given.includes(name)))
+    context.addIssue({
+      code: 'custom',
+      path: ['values'],
+      message: `a trial of ${trial.kind} gives each of ${wanted.join(', ')} once (found ${given.join(', ') || 'none'})`,
+    });
+  for (const [i, { name, value }] of values.entries())
+    if (!inRange(name, value))
+      context.addIssue({
+        code: 'custom',
+        path: ['values', i, 'value'],
+        message: `${name} may be ${VALUE_RANGES[name].join(' to ')} (found ${value})`,
+      });
+});

@@ -30,7 +30,10 @@ describe('check-rig', () => {
     const file = copy();
     await appendTrial(companionPath(file), {
       trial: { kind: 'tail-length', points: [] },
-      values: [{ name: 'payoutScale', value: 1.01, halfWidth: 0.001 }],
+      values: [
+        { name: 'payoutScale', value: 1.01, halfWidth: 0.001 },
+        { name: 'payoutOffset', value: 0, halfWidth: 0.001 },
+      ],
       before: [],
       date: '2020-01-01T00:00:00Z',
       initials: 'ab',
@@ -46,6 +49,6 @@ describe('check-rig', () => {
     writeFileSync(companionPath(file), '- nothing: 1');
     const { code, errors } = await checked(file);
     expect(code).toBe(1);
-    expect(errors).toContain('mill.bench.yaml: trial 1');
+    expect(errors).toContain('mill.bench.yaml:1: trial 1');
   });
 });
