@@ -1,5 +1,10 @@
 import type { EstimateFrame } from '../../shared-model/contract/frame.ts';
-import { goodValue, muscleSignals, type Readings } from '../../shared-model/contract/reading.ts';
+import {
+  goodValue,
+  muscleSignals,
+  type Readings,
+  type ReadSignal,
+} from '../../shared-model/contract/reading.ts';
 import type { Answer, BenchReading } from '../../shared-model/contract/request.ts';
 import { defaultMargin } from '../../shared-model/retraction/judge.ts';
 import { fitTrial } from '../../shared-model/trials/fit-trial.ts';
@@ -40,6 +45,21 @@ const WINDOW = 1;
 const LEAST_SAMPLES = 8;
 const REMEMBERED = 20;
 
+/** What a trial needs besides payout; of these a rig may lack one, and then a person enters it. */
+const NEEDS: Readonly<Record<TrialKind, readonly Needed[]>> = {
+  'tail-length': [],
+  'muscle-bend': ['muscle'],
+  inversion: ['pressure', 'tension'],
+  transition: ['pressure'],
+};
+type Needed = 'pressure' | 'tension' | 'muscle';
+const SIGNALS: Readonly<Record<Needed, { readonly signal: ReadSignal; readonly words: string }>> = {
+  pressure: { signal: 'body_pressure', words: 'body pressure' },
+  tension: { signal: 'tail_tension', words: 'tail tension' },
+  muscle: { signal: 'muscle_1_pressure', words: 'muscle pressures' },
+};
+const isRead = (rig: RigDescription, name: Needed): boolean => rig.reads[SIGNALS[name].signal] !== undefined;
+
 export const createBench = ({ rig, companion, payout }: TriedRig): Bench => {
   let samples: Sample[] = [];
   return {
@@ -51,7 +71,15 @@ export const createBench = ({ rig, companion, payout }: TriedRig): Bench => {
     take: (kind, now) => {
       const chosen = kind === 'inversion' ? lastPull(samples) : lastRest(samples, now);
       if (typeof chosen === 'string') return { ok: false, code: 'not-steady', text: chosen };
-      return { ok: true, value: meanOf(chosen) };
+      const value = meanOf(chosen);
+      const lacking = NEEDS[kind].filter((name) => value[name] === null && isRead(rig, name));
+      if (lacking.length === 0) return { ok: true, value };
+      const words = lacking.map((name) => SIGNALS[name].words).join(' and ');
+      return {
+        ok: false,
+        code: 'not-read',
+        text: `There was no steady good reading of the ${words}. See the Rig tab, then take the reading again.`,
+      };
     },
     save: async (trial, initials, expires, date) => {
       const refused = (code: string, text: string) => ({
@@ -101,15 +129,15 @@ const valuesOf = (
   const value = (reading: Readings[keyof Readings]) => goodValue(reading, now, rig.limits.readingAge) ?? null;
   const corrected = value(readings.tail_payout);
   if (estimate === null || corrected === null) return null;
-  const muscles = muscleSignals(rig.muscles.muscles.length).map(
-    ({ pressure }) => value(readings[pressure]) ?? 0,
-  );
+  const muscles = muscleSignals(rig.muscles.muscles.length).map(({ pressure }) => value(readings[pressure]));
   return {
     // As the encoder gives it, so that a new trial does not build on an old one.
     payout: (corrected - payout.offset) / payout.scale,
     pressure: value(readings.body_pressure),
     tension: value(readings.tail_tension),
-    muscle: muscles.length === 0 ? null : Math.max(...muscles),
+    // One that is not read might be the one that works.
+    muscle:
+      muscles.length === 0 || muscles.includes(null) ? null : Math.max(...(muscles as readonly number[])),
     length: estimate.length,
     turn,
   };

@@ -2,7 +2,12 @@ import { mkdtempSync, readFileSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
+import { createBench } from '../../../main/console/bench.ts';
+import { decodeSignal } from '../../../main/rig/codec.ts';
+import { appendTrial } from '../../../main/rig/companion.ts';
 import { withTrials } from '../../../main/rig/trials.ts';
+import type { EstimateFrame } from '../../../shared-model/contract/frame.ts';
+import type { Readings, ReadSignal } from '../../../shared-model/contract/reading.ts';
 import { type BenchReading, STILL } from '../../../shared-model/contract/request.ts';
 import type { TrialRecord } from '../../../shared-model/trials/trial.ts';
 import { builtInRig } from '../rig/built-in-rig.ts';
@@ -54,6 +59,54 @@ describe('the bench of the console', () => {
     await bench.close();
   });
 
+  /** A bench at rest for a second, with some of its signals not read. */
+  const atRest = (without: readonly ReadSignal[], rig = builtInRig()) => {
+    const still = createBench(withTrials(rig, '/nowhere', '2026-01-01T00:00:00Z'));
+    for (let i = 0; i <= 20; i++) {
+      const at = i / 20;
+      const good = (value: number) => ({ quality: 'good', value, at }) as const;
+      const readings: Readings = {
+        tail_payout: good(2),
+        body_pressure: good(9000),
+        tail_tension: good(40),
+        muscle_1_pressure: good(30_000),
+        muscle_2_pressure: good(0),
+        muscle_3_pressure: good(0),
+        ...Object.fromEntries(without.map((name) => [name, { quality: 'bad', why: 'no answer', at }])),
+      };
+      still.note(readings, { length: 1 } as EstimateFrame, 0, 0, at);
+    }
+    return still;
+  };
+
+  test('gives no reading that lacks what the trial needs, and says what it lacks', () => {
+    expect(atRest([]).take('muscle-bend', 1)).toMatchObject({ ok: true, value: { muscle: 30_000 } });
+    // The muscle that works is not read: the others' zero is not its pressure.
+    for (const [signal, kind, words] of [
+      ['muscle_1_pressure', 'muscle-bend', /muscle pressures/],
+      ['body_pressure', 'transition', /body pressure/],
+      ['tail_payout', 'tail-length', /no good readings/],
+    ] as const) {
+      const answer = atRest([signal]).take(kind, 1);
+      expect(answer).toMatchObject({ ok: false });
+      expect(answer.ok ? '' : answer.text).toMatch(words);
+    }
+    expect(atRest(['muscle_2_pressure']).take('transition', 1)).toMatchObject({ ok: true });
+  });
+
+  test('leaves to the person what the rig has no sensor for', () => {
+    const rig = builtInRig();
+    const { tail_tension, ...reads } = rig.reads;
+    expect(tail_tension).toBeDefined();
+    const pulled = createBench(withTrials({ ...rig, reads }, '/nowhere', '2026-01-01T00:00:00Z'));
+    for (let i = 0; i <= 60; i++) {
+      const good = (value: number) => ({ quality: 'good', value, at: i / 20 }) as const;
+      const readings: Readings = { tail_payout: good(2), body_pressure: good(9000) };
+      pulled.note(readings, { length: 1 } as EstimateFrame, 0, -0.05, i / 20);
+    }
+    expect(pulled.take('inversion', 3)).toMatchObject({ ok: true, value: { pressure: 9000, tension: null } });
+  });
+
   const trial = {
     kind: 'tail-length',
     points: [1, 2, 3, 4, 5].map((tape) => ({ tape, payout: (2 * tape) / 1.01 })),
@@ -80,6 +133,46 @@ describe('the bench of the console', () => {
     expect(tried.rig.reads.tail_payout?.scale).toBeCloseTo(1.01, 6);
     expect(tried.standings.find((one) => one.kind === 'tail-length')?.state).toBe('measured');
     await bench.close();
+  });
+
+  test('keeps both of two trials that are saved in the same moment', async () => {
+    const bench = await startBench(5, { companionFolder: folder() });
+    const answers = await Promise.all([save(bench), save(bench, { initials: 'cd' })]);
+    expect(answers).toMatchObject([{ ok: true }, { ok: true }]);
+    const list = await bench.console_.request('driver', { kind: 'bench-list' });
+    expect((list.ok ? (list.value as TrialRecord[]) : []).map((one) => one.initials)).toEqual(['ab', 'cd']);
+    await bench.close();
+  });
+
+  test('reads the same counts as good whatever zero a trial gave', async () => {
+    const dir = folder();
+    await appendTrial(join(dir, 'built-in.bench.yaml'), {
+      trial: { kind: 'tail-length', points: [] },
+      values: [
+        { name: 'payoutScale', value: 1.1, halfWidth: 0 },
+        { name: 'payoutOffset', value: -0.4, halfWidth: 0 },
+      ],
+      before: [],
+      date: '2026-05-01T00:00:00Z',
+      initials: 'ab',
+      expires: '2026-11-01T00:00:00Z',
+    });
+    const { rig } = withTrials(builtInRig(), dir, '2026-06-01T00:00:00Z');
+    const float = (value: number): number[] => {
+      const view = new DataView(new ArrayBuffer(4));
+      view.setFloat32(0, value);
+      return [view.getUint16(0), view.getUint16(2)];
+    };
+    // The rig file allows −0.2 to 90 m as the encoder gives it.
+    for (const [raw, good] of [
+      [-0.3, false],
+      [-0.1, true],
+      [0, true],
+      [89, true],
+      [91, false],
+    ] as const)
+      expect(decodeSignal(rig.reads.tail_payout!, float(raw)).ok).toBe(good);
+    expect(decodeSignal(rig.reads.tail_payout!, float(0))).toMatchObject({ ok: true, value: -0.4 });
   });
 
   test('keeps none that has too few points, no initials, or would have expired', async () => {
