@@ -2,8 +2,16 @@ import { describe, expect, it } from 'vitest';
 import { plantParameters } from '../../../main/simulator/parameters.ts';
 import { createRandom } from '../../../main/simulator/random.ts';
 import { trueFoldingLoad } from '../../../main/simulator/true-strength.ts';
+import { defaultMargin } from '../../../shared-model/retraction/judge.ts';
+import { applyTrials } from '../../../shared-model/trials/apply-trials.ts';
 import { fitTrial } from '../../../shared-model/trials/fit-trial.ts';
-import type { TrialMachine, TrialPoints, TrialValue } from '../../../shared-model/trials/trial.ts';
+import { capacityOf } from '../../../shared-model/trials/transition.ts';
+import type {
+  TrialMachine,
+  TrialPoints,
+  TrialRecord,
+  TrialValue,
+} from '../../../shared-model/trials/trial.ts';
 import { builtInRig } from '../../main/rig/built-in-rig.ts';
 
 const rig = builtInRig();
@@ -148,6 +156,40 @@ describe('a trial of the bench', () => {
       return fit.ok ? fit.values.find((one) => one.name === 'margin')!.value : Number.POSITIVE_INFINITY;
     });
     expect(margins.filter((margin) => margin > 1.3).length).toBeGreaterThan(15);
+  });
+
+  it('of folding never lets a pull be permitted that would fold the true machine', () => {
+    let within = 0;
+    const seeds = Array.from({ length: 60 }, (_, i) => i + 1);
+    for (const seed of seeds) {
+      const trial = folds(seed, 0.03);
+      const { fit, of } = fitted(trial);
+      const plant = plantParameters(rig, createRandom(seed));
+      if (Math.abs(of('collapseFraction').value - plant.collapse) <= of('collapseFraction').halfWidth)
+        within++;
+      const record: TrialRecord = {
+        trial,
+        values: [...fit.values],
+        before: [],
+        date: '2026-05-01T00:00:00Z',
+        initials: 'ab',
+        expires: '2026-11-01T00:00:00Z',
+      };
+      const { body } = applyTrials(machine, [record], '2026-06-01T00:00:00Z');
+      const random = createRandom(1000 + seed);
+      for (let i = 0; i < 20; i++) {
+        const length = 0.3 + 4 * random.uniform();
+        const bend = Math.min(1.2, 3 / length) * random.uniform();
+        const pressure = 5000 + 9000 * random.uniform();
+        const arm = (1 - Math.cos(bend * length)) / bend;
+        const folding = trueFoldingLoad(plant, { length, pressure, bend: bend * length, arm });
+        expect(
+          capacityOf({ length, bend, pressure }, body)(body.collapseFraction, body.eccentricityFloor),
+        ).toBeLessThanOrEqual(defaultMargin(body) * folding);
+      }
+    }
+    // Three standard deviations of a share of 0.95 in 60.
+    expect(within / seeds.length).toBeGreaterThan(0.865);
   });
 
   it.each<[string, TrialPoints, RegExp]>([
