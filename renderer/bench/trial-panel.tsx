@@ -192,20 +192,27 @@ const SaveForm = (props: {
 }) => {
   const [initials, setInitials] = useState('');
   const [days, setDays] = useState(String(HOLDS_DAYS));
+  const [saving, setSaving] = useState(false);
   const save = async (): Promise<void> => {
     const holds = numberOf(days);
     if (holds === null || !(holds >= 1 && holds <= 3650)) {
       report({ ok: false, code: 'days', text: 'It may hold from 1 to 3650 days.' }, '');
       return;
     }
-    const answer = await consoleApi.request({
-      kind: 'bench-save',
-      trial: trialOf(props.kind, props.points),
-      initials: initials.trim(),
-      expires: new Date(Date.now() + holds * 86_400_000).toISOString(),
-    });
-    report(answer, 'Trial saved. It is in force from the next start of the console.');
-    if (answer.ok) props.onSaved();
+    // A second press meanwhile would keep the same trial twice, for ever.
+    setSaving(true);
+    try {
+      const answer = await consoleApi.request({
+        kind: 'bench-save',
+        trial: trialOf(props.kind, props.points),
+        initials: initials.trim(),
+        expires: new Date(Date.now() + holds * 86_400_000).toISOString(),
+      });
+      report(answer, 'Trial saved. It is in force from the next start of the console.');
+      if (answer.ok) props.onSaved();
+    } finally {
+      setSaving(false);
+    }
   };
   return (
     <div className="trial-form">
@@ -219,7 +226,7 @@ const SaveForm = (props: {
       </label>
       <button
         type="button"
-        disabled={!props.ready || initials.trim() === ''}
+        disabled={saving || !props.ready || initials.trim() === ''}
         onClick={() => void save()}
         title={props.ready ? 'Needs your initials' : 'Needs enough points for a fit'}
       >
