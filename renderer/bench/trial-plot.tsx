@@ -47,6 +47,12 @@ const dataOf = ({ points, line }: Plot): UPlot.AlignedData => {
   ];
 };
 
+/** Room at both ends, or of several points at the last place only the first is drawn. */
+const withRoom = (_: UPlot, low: number, high: number): UPlot.Range.MinMax => {
+  const room = 0.03 * (high - low) || 1;
+  return [low - room, high + room];
+};
+
 const optionsFor = (plot: Plot, element: HTMLElement): UPlot.Options => {
   const style = getComputedStyle(document.documentElement);
   const colour = (name: string) => style.getPropertyValue(name).trim();
@@ -65,7 +71,7 @@ const optionsFor = (plot: Plot, element: HTMLElement): UPlot.Options => {
     height: 240,
     legend: { show: false },
     cursor: { show: false },
-    scales: { x: { time: false } },
+    scales: { x: { time: false, range: withRoom } },
     axes: [axis(plot.x), axis(plot.y)],
     series: [
       {},
