@@ -49,6 +49,6 @@ export const withTrials = (rig: RigDescription, folder: string | null, now: stri
     companion,
     payout,
     standings,
-    trouble: read.ok ? null : read.errors.join(' '),
+    trouble: read.ok ? null : read.errors.map((error) => `${error.replace(/\.$/, '')}.`).join(' '),
   };
 };
