@@ -44,6 +44,8 @@ export interface Bench {
 const WINDOW = 1;
 const LEAST_SAMPLES = 8;
 const REMEMBERED = 20;
+/** Estimated tip speed of a body at rest, the encoder's counts being noise [m/s]. */
+const STILL_SPEED = 0.005;
 
 /** What a trial needs besides payout; of these a rig may lack one, and then a person enters it. */
 const NEEDS: Readonly<Record<TrialKind, readonly Needed[]>> = {
@@ -66,7 +68,13 @@ export const createBench = ({ rig, companion, payout }: TriedRig): Bench => {
     note: (readings, estimate, turn, tipSpeed, now) => {
       const values = valuesOf(rig, payout, readings, estimate, turn, now);
       samples = samples.filter((one) => now - one.at <= REMEMBERED);
-      if (values !== null) samples.push({ at: now, pulling: tipSpeed < 0, moving: tipSpeed !== 0, values });
+      if (values !== null)
+        samples.push({
+          at: now,
+          pulling: tipSpeed < 0,
+          moving: tipSpeed !== 0 || !(Math.abs(estimate?.tipSpeed ?? Number.NaN) <= STILL_SPEED),
+          values,
+        });
     },
     take: (kind, now) => {
       const chosen = kind === 'inversion' ? lastPull(samples) : lastRest(samples, now);

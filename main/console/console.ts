@@ -15,7 +15,8 @@ import {
 } from '../../shared-model/contract/request.ts';
 import { targetsOnBody } from '../../shared-model/mission/selectors.ts';
 import { type Judgement, PermittedDrive } from '../../shared-model/retraction/interlock.ts';
-import type { WayBack } from '../../shared-model/retraction/verdict.ts';
+import { bentHoopStrength } from '../../shared-model/retraction/standing.ts';
+import type { Reason, WayBack } from '../../shared-model/retraction/verdict.ts';
 import { createEstimate, type Estimate, stepEstimate } from '../../shared-model/shape/estimate.ts';
 import type { Clock } from '../clock.ts';
 import type { Recorder } from '../record/recorder.ts';
@@ -91,7 +92,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
   const mission = createMissionLog(clock, recorder, (event) => broadcast({ kind: 'event', event }));
   const notes = createMissionNotes((event) => void mission.append(event));
   const clients = new Set<string>();
-  const judge = createWayBackJudge(rig);
+  const judge = createWayBackJudge(rig, missingTrials(parts.tried));
   const guard = createPullGuard(rig);
   const described = new Set(Object.keys(rig.reads));
   const hasRetractorDrive = rig.writes.tip_retractor_speed_setpoint !== undefined;
@@ -267,7 +268,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
       bodyPressureBefore:
         ramps.bodyPressure ?? goodValue(readings.body_pressure, now, rig.limits.readingAge) ?? null,
       growthPressure: wish.motion.kind === 'grow' ? growthPressureOf(estimate, rig) : null,
-      hoopStrength: rig.body.hoopStrength,
+      hoopStrength: wish.pressure > 0 ? bentHoopStrength(estimate.path, rig.body) : rig.body.hoopStrength,
       bodyRadius: rig.body.radius,
     });
     // A ramp that was refused must not run on behind the refusal.
@@ -450,6 +451,16 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
 /** Open, and not closed in between: no permit outlives the connection it was judged on. */
 const sameLink = (now: LinkStatus, then: LinkStatus): boolean =>
   now.state === 'open' && then.state === 'open' && now.since === then.since;
+
+/** Trials that cannot be read may have been more careful than the rig file: until they can, nothing is pulled. */
+const missingTrials = ({ trouble, companion }: TriedRig): Reason | null =>
+  trouble === null
+    ? null
+    : {
+        code: 'trials-unread',
+        text: `What was measured on this machine cannot be read. ${trouble}`,
+        remedy: `Mend ${companion}, or move it away to rely on the rig file; then start the console again.`,
+      };
 
 /** Total bend of the body as estimated [rad]. */
 const turnOf = ({ path }: Estimate): number => path.bend[path.count - 1] ?? 0;

@@ -12,7 +12,7 @@ import { outlookLine } from '../../shared-model/retraction/outlook-line.ts';
 import type { Trip } from '../../shared-model/retraction/pull-watch.ts';
 import { findRemedies, remedied } from '../../shared-model/retraction/remedies.ts';
 import { judgeStanding, type Standing } from '../../shared-model/retraction/standing.ts';
-import type { Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
+import type { Reason, Remedy, WayBack } from '../../shared-model/retraction/verdict.ts';
 import type { WayBackInput } from '../../shared-model/retraction/way-back-input.ts';
 import type { Estimate } from '../../shared-model/shape/estimate.ts';
 import type { RigDescription } from '../rig/signal.ts';
@@ -22,20 +22,26 @@ const REMEDIES_EVERY = 0.5;
 
 /** The judge of one rig with what it keeps from tick to tick. */
 export interface WayBackJudge {
+  readonly missing: Reason | null;
   readonly arms: Arms;
   readonly space: JudgeSpace;
   /** Held while the sensor's own band lies within it, so that noise asks for no new outlook. Pa. */
   band: { readonly low: number; readonly high: number };
   remedies: readonly Remedy[];
   remediesAt: number;
+  /** The last preview, so that no screen can ask for more work than the remedies themselves are. */
+  preview: { readonly kind: Remedy['kind']; readonly at: number; readonly line: OutlookLine | null } | null;
 }
 
-export const createWayBackJudge = (rig: RigDescription): WayBackJudge => ({
+/** @param missing what the verdict would rest on and cannot be had for this machine; null where nothing is */
+export const createWayBackJudge = (rig: RigDescription, missing: Reason | null = null): WayBackJudge => ({
+  missing,
   arms: createArms(256, holdingOf(rig)),
   space: createJudgeSpace(),
   band: { low: Number.NaN, high: Number.NaN },
   remedies: [],
   remediesAt: Number.NEGATIVE_INFINITY,
+  preview: null,
 });
 
 const holdingOf = ({ body, place }: RigDescription): Holding => ({
@@ -66,11 +72,9 @@ export const judgeTo = (
 ): WayBack => {
   const input = inputOf(judge, rig, around, target);
   const judged = judgeWayBack(input, judge.space);
-  const { foldSuspected } = around;
+  const unreliable = around.foldSuspected ?? judge.missing;
   const verdict: WayBack =
-    foldSuspected === null
-      ? judged
-      : { kind: 'cannot-judge', reasons: [foldSuspected], text: foldSuspected.text };
+    unreliable === null ? judged : { kind: 'cannot-judge', reasons: [unreliable], text: unreliable.text };
   if (verdict.kind !== 'would-buckle') {
     if (target === 0) judge.remedies = [];
     return verdict;
@@ -105,7 +109,7 @@ const inputOf = (
     body: rig.body,
     margin: defaultMargin(rig.body),
     ...pressure,
-    payout: goodValue(readings.tail_payout, now, age) ?? null,
+    payout: payoutOf(readings, now, age),
     // Faster takes more tension; judged at the fastest that may be asked for.
     tipSpeed: rig.limits.tipSpeed,
     target,
@@ -127,6 +131,12 @@ const heldBand = (
   if (!within) judge.band = { low: pressure - 1.5 * accuracy, high: pressure + 1.5 * accuracy };
   const { low, high } = judge.band;
   return { pressure: (low + high) / 2, pressureBand: (high - low) / 2 };
+};
+
+/** λ [m]; just below zero, where the estimate still takes it for an encoder's noise, none is out. */
+const payoutOf = (readings: Readings, now: number, age: number): number | null => {
+  const payout = goodValue(readings.tail_payout, now, age);
+  return payout === undefined ? null : Math.max(0, payout);
 };
 
 const heldTension = (readings: Readings, now: number, age: number): number | null => {
@@ -185,8 +195,11 @@ export const remedyLine = (
 ): OutlookLine | null => {
   const remedy = judge.remedies.find((one) => one.kind === kind);
   if (remedy === undefined) return null;
+  if (judge.preview?.kind === kind && judge.preview.at === judge.remediesAt) return judge.preview.line;
   const found = remedied(inputOf(judge, rig, around, 0), remedy);
-  return found === null ? null : outlookLine(found.shape, found.space, defaultMargin(rig.body));
+  const line = found === null ? null : outlookLine(found.shape, found.space, defaultMargin(rig.body));
+  judge.preview = { kind, at: judge.remediesAt, line };
+  return line;
 };
 
 /** The last judgement to the base as a chart. */

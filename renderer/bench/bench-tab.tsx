@@ -27,9 +27,7 @@ export const BenchTab = () => {
       <section className="panel">
         <h2>Trials</h2>
         {rig.companionTrouble === null ? null : (
-          <p className="verdict-asks">
-            ▲ {rig.companionTrouble} Nothing counts as measured until it can be read.
-          </p>
+          <p className="verdict-asks">▲ {rig.companionTrouble} Nothing is pulled until it can be read.</p>
         )}
         <div className="trial-list">
           {TRIAL_GUIDES.map(({ kind, title, gives }) => (

@@ -44,7 +44,7 @@ export interface DriveRequest {
   readonly bodyPressureBefore: number | null;
   /** Pressure that growth takes here at rest [Pa]; null where the wish is not to grow. */
   readonly growthPressure: number | null;
-  /** Strength of wall or seam as hoop force [N/m]; null where the rig file gives none. */
+  /** Hoop force that wall or seam bear on a straight body that is loaded as this one is in its tightest bend [N/m]; null: not known. */
   readonly hoopStrength: number | null;
   readonly bodyRadius: number;
 }

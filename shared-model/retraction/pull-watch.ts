@@ -10,7 +10,7 @@ export interface PullWatch {
   /** What the drives of tail and tip were told and did of late. */
   readonly spool: Followed;
   readonly tip: Followed;
-  /** Tail taken in at less tension than turning a tip can take [m], and whether the tail was known to be taut before. */
+  /** Tail taken in at less tension than turning a tip takes, since one last turned [m]; whether the tail was taut before. */
   readonly takenLoose: number;
   readonly taut: boolean;
   /** Tail that was let out without tension since it was last taut: the tip did not take it [m]. */
@@ -109,17 +109,20 @@ export const stepWatch = (before: PullWatch, tick: WatchedTick): PullWatch => {
   };
 };
 
-/** A fresh press tries again; a suspected fold stays. */
+/** A fresh press tries again; a suspected fold stays, and so does what came in loose, or short pulls would creep past it. */
 export const rearmWatch = (watch: PullWatch): PullWatch => ({
   ...watch,
   trip: null,
   spool: NOTHING_TOLD,
   tip: NOTHING_TOLD,
-  takenLoose: 0,
 });
 
 /** A person looked and says that the body lies as before. */
-export const clearFold = (watch: PullWatch): PullWatch => ({ ...rearmWatch(watch), foldSuspected: null });
+export const clearFold = (watch: PullWatch): PullWatch => ({
+  ...rearmWatch(watch),
+  foldSuspected: null,
+  takenLoose: 0,
+});
 
 const follow = (before: Followed, speed: number, moved: number | null, dt: number): Followed => {
   if (speed === 0 || moved === null || !Number.isFinite(moved)) return NOTHING_TOLD;
@@ -145,7 +148,11 @@ const stepLoose = (
   const { tension, losslessTension: least } = tick;
   const pulling = tick.spoolSpeed < 0 && !tick.gripped;
   if (tension === undefined || !pulling)
-    return { takenLoose: 0, taut: tension !== undefined && !tick.gripped && tension >= TAUT_SHARE * least };
+    return {
+      // Only tail that is let out again makes up for it.
+      takenLoose: tension === undefined ? 0 : Math.max(0, takenLoose - Math.max(0, paidOut ?? 0)),
+      taut: tension !== undefined && !tick.gripped && tension >= TAUT_SHARE * least,
+    };
   if (paidOut === null || tick.length <= tick.shortLength) return { takenLoose, taut };
   if (tension >= TURNING_SHARE * least) return { takenLoose: 0, taut: true };
   // What is known to lie loose comes in first.

@@ -170,10 +170,18 @@ const lostGripReasons = ({ grip, tipRetractorState: state }: DriveRequest): Reas
   ];
 };
 
-/** The wall against a body pressure: its hoop load stays a factor below what the rig file says it bears. */
+/**
+ * The wall against a higher body pressure: its hoop load stays a factor below what it bears as the body lies. Lowering is
+ * the way out, and is never refused for it.
+ */
 export const hoopReasons = (request: DriveRequest, pressure: number): Reason[] => {
   const { hoopStrength, bodyRadius } = request;
-  if (hoopStrength === null || pressure * bodyRadius * HOOP_FACTOR <= hoopStrength) return [];
+  if (
+    hoopStrength === null ||
+    pressure <= (request.bodyPressureBefore ?? Number.NaN) ||
+    pressure * bodyRadius * HOOP_FACTOR <= hoopStrength
+  )
+    return [];
   return [
     {
       code: 'hoop',
@@ -183,10 +191,12 @@ export const hoopReasons = (request: DriveRequest, pressure: number): Reason[] =
   ];
 };
 
-/** A setpoint that leaps would fill or vent faster than the rig file allows. */
+/** A setpoint that leaps would fill or vent faster than the rig file allows; down to the limit it may always. */
 export const rampReasons = (request: DriveRequest, pressure: number): Reason[] => {
-  const step = Math.abs(pressure - (request.bodyPressureBefore ?? Number.NaN));
-  if (step <= request.limits.bodyPressureRate * RAMP_TIME + 1) return [];
+  const before = request.bodyPressureBefore ?? Number.NaN;
+  const step = request.limits.bodyPressureRate * RAMP_TIME + 1;
+  const lowest = Math.min(before, request.limits.bodyPressureMax) - step;
+  if (pressure >= lowest && pressure <= before + step) return [];
   return [
     {
       code: 'pressure-ramp',

@@ -94,10 +94,17 @@ const heldBack = ({ body, pressureBand }: StandingInput, pressure: number): numb
 
 /** Strength over PR and the factor of the tightest bend's inside. */
 const hoopFactor = (shape: SampledShape, body: BodyDescription, pressure: number): number | null => {
-  if (body.hoopStrength === null) return null;
-  const load = hoopStress(pressure, body.radius, 1) * tightestFactor(shape, body.radius);
-  return load > 0 ? body.hoopStrength / load : Number.POSITIVE_INFINITY;
+  const strength = bentHoopStrength(shape, body);
+  if (strength === null) return null;
+  const load = hoopStress(pressure, body.radius, 1);
+  return load > 0 ? strength / load : Number.POSITIVE_INFINITY;
 };
+
+/** What wall or seam bear of the straight hoop load PR, for the inside of the tightest bend bears more [N/m]. */
+export const bentHoopStrength = (
+  shape: SampledShape,
+  { hoopStrength, radius }: Pick<BodyDescription, 'hoopStrength' | 'radius'>,
+): number | null => (hoopStrength === null ? null : hoopStrength / tightestFactor(shape, radius));
 
 /** A bend tighter than the body is wide has no factor that could be relied on. */
 const tightestFactor = ({ s, bend, count }: SampledShape, radius: number): number => {

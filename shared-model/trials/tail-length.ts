@@ -29,7 +29,7 @@ export const fitTailLength = (points: PointsOf<'tail-length'>): TrialFit => {
   if (!inRange('payoutOffset', offset))
     return {
       ok: false,
-      why: `The zero is off by ${offset.toFixed(2)} m of tail; up to ${VALUE_RANGES.payoutOffset[1]} m is allowed. Set it at the rig.`,
+      why: `The zero is off by ${offset.toFixed(2)} m of tail; ${VALUE_RANGES.payoutOffset.join(' to ')} m is allowed. Set it at the rig.`,
     };
   const payouts = points.map((point) => point.payout);
   const [low, high] = [Math.min(...payouts), Math.max(...payouts)];

@@ -63,9 +63,10 @@ export const VALUES_OF: Readonly<Record<TrialKind, readonly TrialValue[]>> = {
 
 /** What each value may be, in SI; both ends are allowed. Outside it is a slip of hand or unit (common practice). */
 export const VALUE_RANGES: Readonly<Record<TrialValue, readonly [low: number, high: number]>> = {
-  // A scale further off than this is another spool, an offset another zero.
+  // A scale further off than this is another spool, an offset another zero; a payout that reads further below zero is
+  // refused by the estimate, and nothing could grow.
   payoutScale: [0.8, 1.25],
-  payoutOffset: [-0.5, 0.5],
+  payoutOffset: [-0.04, 0.5],
   bendGain: [0.05, 2],
   inversionYield: [0, 100_000],
   friction: [0, 1.5],

@@ -9,7 +9,7 @@ import { withTrials } from '../../../main/rig/trials.ts';
 import type { EstimateFrame } from '../../../shared-model/contract/frame.ts';
 import type { Readings, ReadSignal } from '../../../shared-model/contract/reading.ts';
 import { type BenchReading, STILL } from '../../../shared-model/contract/request.ts';
-import type { TrialRecord } from '../../../shared-model/trials/trial.ts';
+import { type TrialRecord, VALUE_RANGES } from '../../../shared-model/trials/trial.ts';
 import { builtInRig } from '../rig/built-in-rig.ts';
 import { type Bench, startBench } from './a-console.ts';
 
@@ -28,7 +28,7 @@ describe('the bench of the console', () => {
   test('gives the mean of a second at rest, and nothing while something moves or is not read', async () => {
     const bench = await startBench();
     await bench.hold(GROW, () => length(bench) >= 1);
-    await bench.run(1.2);
+    await bench.run(2);
     const rest = reading(await take(bench, 'tail-length'));
     expect(rest.payout).toBeCloseTo(bench.rig.truth().payout, 1);
     expect(rest.count).toBeGreaterThan(10);
@@ -74,7 +74,7 @@ describe('the bench of the console', () => {
         muscle_3_pressure: good(0),
         ...Object.fromEntries(without.map((name) => [name, { quality: 'bad', why: 'no answer', at }])),
       };
-      still.note(readings, { length: 1 } as EstimateFrame, 0, 0, at);
+      still.note(readings, { length: 1, tipSpeed: 0 } as EstimateFrame, 0, 0, at);
     }
     return still;
   };
@@ -102,7 +102,7 @@ describe('the bench of the console', () => {
     for (let i = 0; i <= 60; i++) {
       const good = (value: number) => ({ quality: 'good', value, at: i / 20 }) as const;
       const readings: Readings = { tail_payout: good(2), body_pressure: good(9000) };
-      pulled.note(readings, { length: 1 } as EstimateFrame, 0, -0.05, i / 20);
+      pulled.note(readings, { length: 1, tipSpeed: 0 } as EstimateFrame, 0, -0.05, i / 20);
     }
     expect(pulled.take('inversion', 3)).toMatchObject({ ok: true, value: { pressure: 9000, tension: null } });
   });
@@ -150,7 +150,7 @@ describe('the bench of the console', () => {
       trial: { kind: 'tail-length', points: [] },
       values: [
         { name: 'payoutScale', value: 1.1, halfWidth: 0 },
-        { name: 'payoutOffset', value: -0.4, halfWidth: 0 },
+        { name: 'payoutOffset', value: -0.04, halfWidth: 0 },
       ],
       before: [],
       date: '2026-05-01T00:00:00Z',
@@ -172,7 +172,7 @@ describe('the bench of the console', () => {
       [91, false],
     ] as const)
       expect(decodeSignal(rig.reads.tail_payout!, float(raw)).ok).toBe(good);
-    expect(decodeSignal(rig.reads.tail_payout!, float(0))).toMatchObject({ ok: true, value: -0.4 });
+    expect(decodeSignal(rig.reads.tail_payout!, float(0))).toMatchObject({ ok: true, value: -0.04 });
   });
 
   test('keeps none that has too few points, no initials, or would have expired', async () => {
@@ -201,5 +201,53 @@ describe('the bench of the console', () => {
     const broken = withTrials(builtInRig(), dir, '2026-06-01T00:00:00Z');
     expect(broken.trouble).toContain('built-in.bench.yaml');
     expect(broken.rig.body.measured).toEqual([]);
+  });
+
+  test('gives no reading of a body that still moves though nothing is asked of it', () => {
+    const rolling = createBench(withTrials(builtInRig(), '/nowhere', '2026-01-01T00:00:00Z'));
+    for (const tipSpeed of [0.02, Number.NaN]) {
+      for (let i = 0; i <= 20; i++) {
+        const readings: Readings = { tail_payout: { quality: 'good', value: 2, at: i / 20 } };
+        rolling.note(readings, { length: 1, tipSpeed } as EstimateFrame, 0, 0, i / 20);
+      }
+      expect(rolling.take('tail-length', 1)).toMatchObject({ ok: false, code: 'not-steady' });
+    }
+  });
+
+  test('lets the body grow from its base whatever zero a trial may give', async () => {
+    for (const offset of VALUE_RANGES.payoutOffset) {
+      const dir = folder();
+      await appendTrial(join(dir, 'built-in.bench.yaml'), {
+        trial: { kind: 'tail-length', points: [] },
+        values: [
+          { name: 'payoutScale', value: 1, halfWidth: 0 },
+          { name: 'payoutOffset', value: offset, halfWidth: 0 },
+        ],
+        before: [],
+        date: '2025-12-01T00:00:00Z',
+        initials: 'ab',
+        expires: '2027-01-01T00:00:00Z',
+      });
+      const bench = await startBench(5, { companionFolder: dir });
+      expect(bench.frame().wayBack.kind).toBe('clear');
+      await bench.hold(GROW, () => false, 3);
+      expect(bench.rig.truth().length).toBeGreaterThan(0.4);
+      await bench.close();
+    }
+  });
+
+  test('judges no way back while the trials of the machine cannot be read', async () => {
+    const dir = folder();
+    writeFileSync(join(dir, 'built-in.bench.yaml'), 'not: [a list');
+    const bench = await startBench(5, { companionFolder: dir });
+    await bench.hold(GROW, () => length(bench) >= 0.5);
+    expect(bench.frame().wayBack).toMatchObject({
+      kind: 'cannot-judge',
+      reasons: [{ code: 'trials-unread' }],
+    });
+    const before = bench.rig.truth().length;
+    await bench.hold(RETRACT, () => false, 2);
+    expect(bench.rig.truth().length).toBeCloseTo(before, 3);
+    await bench.close();
   });
 });

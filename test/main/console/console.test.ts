@@ -208,6 +208,16 @@ describe('the console, driving the built-in rig in virtual time', () => {
     await bench.close();
   });
 
+  test('suspects the fold of a weak wall also when it is pulled in short taps', async () => {
+    const bench = await startBench();
+    await grownTo(bench, 1.4);
+    bench.rig.fault('weak-wall');
+    for (let tap = 0; tap < 12; tap++) await bench.hold({ ...RETRACT, tipSpeed: 0.05 }, () => false, 0.2);
+    expect(bench.frame().foldSuspected?.code).toBe('suspected-fold');
+    expect(bench.rig.truth().folded).toBeLessThan(0.1);
+    await bench.close();
+  });
+
   test.each([
     ['motor-stall', GROW, 'spool-drive'],
     ['motor-stall', RETRACT, 'spool-drive'],

@@ -324,9 +324,14 @@ describe('the interlock refuses', () => {
     expect(pressureWish({ bodyPressure: 8700, bodyPressureBefore: 9000 })).toEqual(['pressure-ramp']);
     expect(pressureWish({ bodyPressure: 9100, bodyPressureBefore: null })).toEqual(['pressure-ramp']);
   });
+  test('never to lower the pressure, however far above limit and wall it is', () => {
+    expect(pressureWish({ bodyPressure: 14_000, bodyPressureBefore: 15_500 })).toEqual([]);
+    expect(pressureWish({ bodyPressure: 8900, bodyPressureBefore: 9000, hoopStrength: 100 })).toEqual([]);
+    expect(pressureWish({ bodyPressure: 13_000, bodyPressureBefore: 15_500 })).toEqual(['pressure-ramp']);
+  });
   // PR·4 ≤ strength: 9,000 Pa × 0.08 m × 4 = 2,880 N/m (thin shell; the factor is common practice).
   test('a body pressure that loads wall or seam beyond a fourth of its strength', () => {
-    const over = { bodyPressure: 9000, bodyPressureBefore: 9000 };
+    const over = { bodyPressure: 9000, bodyPressureBefore: 8900 };
     expect(pressureWish({ ...over, hoopStrength: 2880 })).toEqual([]);
     expect(pressureWish({ ...over, hoopStrength: 2879 })).toEqual(['hoop']);
     expect(pressureWish({ ...over, hoopStrength: Number.NaN })).toEqual(['hoop']);

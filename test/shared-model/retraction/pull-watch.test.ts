@@ -122,4 +122,14 @@ describe('the watch over a pull', () => {
     expect(more.loose).toBeCloseTo(0.75, 6);
     expect(play(more, 70, { spoolSpeed: -0.2, tension: 0.1 }).trip).toBeNull();
   });
+
+  it('suspects a fold of many short pulls too, and forgets what came in only by turning the tip or letting tail out', () => {
+    const tap = (watch: PullWatch): PullWatch =>
+      play(play(rearmWatch(watch), 2, { ...pulling, tension: 30 }), 10, { tension: 60 });
+    let watch = resting;
+    for (let taps = 0; taps < 3 && watch.foldSuspected === null; taps++) watch = tap(watch);
+    expect(watch.foldSuspected?.code).toBe('suspected-fold');
+    expect(play(tap(resting), 2, pulling).takenLoose).toBe(0);
+    expect(play(tap(resting), 4, { spoolSpeed: 0.2, tension: 60 }).takenLoose).toBe(0);
+  });
 });

@@ -1,5 +1,9 @@
 import { describe, expect, it } from 'vitest';
-import { judgeStanding, type StandingInput } from '../../../shared-model/retraction/standing.ts';
+import {
+  bentHoopStrength,
+  judgeStanding,
+  type StandingInput,
+} from '../../../shared-model/retraction/standing.ts';
 import type { Segment } from '../../../shared-model/shape/vector.ts';
 import { bodyB, straight, wayBackInput } from './way-back-input.ts';
 
@@ -52,6 +56,9 @@ describe('a body between pulls', () => {
     expect(standing([...straight(1), ...bent], { body }).hoop).toBeCloseTo(5 / 1.125, 6);
     expect(standing([{ length: 0.02, curvature: 26, plane: 0 }], { body }).hoop).toBe(0);
     expect(standing(straight(1)).hoop).toBeNull();
+    const { shape } = wayBackInput([...straight(1), ...bent]);
+    expect(bentHoopStrength(shape!, body)).toBeCloseTo(2000 / 1.125, 3);
+    expect(bentHoopStrength(shape!, bodyB)).toBeNull();
   });
 
   it('can grow while the supply gives more than growth takes there', () => {

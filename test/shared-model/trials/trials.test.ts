@@ -30,7 +30,7 @@ const why = (trial: TrialPoints): string => {
 };
 
 /** Points of a true machine, with noise from a seeded source. */
-const tails = (seed: number, scale = 1.012, offset = -0.03): TrialPoints => {
+const tails = (seed: number, scale = 1.012, offset = 0.03): TrialPoints => {
   const random = createRandom(seed);
   return {
     kind: 'tail-length',
@@ -76,7 +76,7 @@ describe('a trial of the bench', () => {
   it('finds scale and zero of the spool’s encoder', () => {
     const { of } = fitted(tails(3));
     expect(Math.abs(of('payoutScale').value - 1.012)).toBeLessThan(of('payoutScale').halfWidth * 1.5);
-    expect(Math.abs(of('payoutOffset').value + 0.03)).toBeLessThan(of('payoutOffset').halfWidth * 1.5);
+    expect(Math.abs(of('payoutOffset').value - 0.03)).toBeLessThan(of('payoutOffset').halfWidth * 1.5);
   });
 
   it('finds yield and friction of inversion from straight and bent pulls', () => {
@@ -101,7 +101,7 @@ describe('a trial of the bench', () => {
     };
     for (const share of [
       holds(tails, 'payoutScale', 1.012),
-      holds(tails, 'payoutOffset', -0.03),
+      holds(tails, 'payoutOffset', 0.03),
       holds(pulls, 'inversionYield', 1600),
       holds(pulls, 'friction', 0.31),
       holds(bends, 'bendGain', 0.62),
