@@ -85,7 +85,7 @@ A result's ratio is null where nothing pulls or no body is out. verdict: invert,
       if (options.length === undefined) return failWith(['--rig needs --length, the body length in metres.']);
       // What was measured on the machine counts for the plan too.
       const { rig, trouble } = withTrials(loaded.rig, null, new Date().toISOString());
-      if (trouble !== null) output.error(trouble);
+      if (trouble !== null) return failWith([trouble]);
       const pressure =
         (options.pressure ?? (rig.limits.bodyPressureMin + rig.limits.bodyPressureMax) / 2000) * 1000;
       const plan = {

@@ -53,7 +53,7 @@ const reportTrials = (rig: RigDescription, options: CheckRigOptions, output: Out
   if (options.file === undefined) return true;
   const { companion, standings, trouble } = withTrials(rig, null, systemClock.wall().toISOString());
   if (trouble !== null) {
-    output.error(`${trouble} Nothing counts as measured until it can be read.`);
+    output.error(`${trouble} The console pulls nothing until it can be read.`);
     return false;
   }
   if (options.json) return true;

@@ -181,7 +181,7 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     const judged = decide(stepped.wish, verdict, gripState, dt);
     const ends = guard.endsPress(judged);
     if (ends !== null) lease = revokeLease(lease, ends);
-    const outcome = sameLink(link.status(), linkRead) ? await link.write(judged.drive, clock.now()) : null;
+    const outcome = linkRead.state === 'open' ? await link.write(judged.drive, clock.now()) : null;
     confirmed = outcome?.outcome === 'confirmed';
     const missed = guard.wrote(judged.drive, outcome);
     if (missed !== null) disarm(missed);
@@ -447,10 +447,6 @@ export const createConsole = (parts: ConsoleParts): RunningConsole => {
     },
   };
 };
-
-/** Open, and not closed in between: no permit outlives the connection it was judged on. */
-const sameLink = (now: LinkStatus, then: LinkStatus): boolean =>
-  now.state === 'open' && then.state === 'open' && now.since === then.since;
 
 /** Trials that cannot be read may have been more careful than the rig file: until they can, nothing is pulled. */
 const missingTrials = ({ trouble, companion }: TriedRig): Reason | null =>

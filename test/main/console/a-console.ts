@@ -2,6 +2,7 @@ import { createConsole, type RunningConsole } from '../../../main/console/consol
 import type { Recorder } from '../../../main/record/recorder.ts';
 import { createRigLink } from '../../../main/rig/link.ts';
 import type { SerialLine } from '../../../main/rig/serial-line.ts';
+import type { RigDescription } from '../../../main/rig/signal.ts';
 import { withTrials } from '../../../main/rig/trials.ts';
 import { type BuiltInRig, createBuiltInRig } from '../../../main/simulator/built-in-rig.ts';
 import type {
@@ -45,15 +46,18 @@ export const startBench = async (
   seed = 5,
   {
     companionFolder = '/nowhere',
+    change = (rig) => rig,
     wrap = (line) => line,
   }: {
     readonly companionFolder?: string;
+    /** Makes another machine of the built-in rig's description. */
+    readonly change?: (rig: RigDescription) => RigDescription;
     /** What stands between the recorder and the machine: a bad line. */
     readonly wrap?: (line: SerialLine, clock: VirtualClock) => SerialLine;
   } = {},
 ): Promise<Bench> => {
   const clock = createVirtualClock();
-  const description = builtInRig();
+  const description = change(builtInRig());
   const rig = createBuiltInRig(description, { seed, clock });
   const wire: WireSpeed[] = [];
   const openLine = async (): Promise<SerialLine> => {
@@ -134,7 +138,7 @@ export const startBench = async (
   return bench;
 };
 
-const memoryRecorder = (events: MissionEvent[]): Recorder => ({
+export const memoryRecorder = (events: MissionEvent[]): Recorder => ({
   folder: '/nowhere',
   status: () => ({ state: 'recording', folder: '/nowhere', since: 0, bytes: 0 }),
   append: async (event) => {

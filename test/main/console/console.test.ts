@@ -341,4 +341,24 @@ describe('the console, driving the built-in rig in virtual time', () => {
     expect(bench.frame().estimate?.bend.right).toBeCloseTo(bent, 1);
     await bench.close();
   });
+
+  test('raises body pressure no further than the wall bears, and lowers it from anywhere', async () => {
+    // PR·4 at 9.6 kPa and R 80 mm (thin shell; the factor is common practice).
+    const strength = 4 * 9600 * 0.08;
+    const bench = await startBench(5, {
+      change: (rig) => ({ ...rig, body: { ...rig.body, hoopStrength: strength } }),
+    });
+    const pressure = (): number => {
+      const { body_pressure } = bench.frame().readings;
+      return body_pressure?.quality === 'good' ? body_pressure.value : Number.NaN;
+    };
+    await bench.hold({ pressure: 1 }, () => false, 3);
+    await bench.run(2);
+    expect(pressure()).toBeGreaterThan(9300);
+    expect(pressure()).toBeLessThan(9700);
+    await bench.hold({ pressure: -1 }, () => false, 1.5);
+    await bench.run(2);
+    expect(pressure()).toBeLessThan(7500);
+    await bench.close();
+  });
 });
